@@ -97,9 +97,6 @@ var spellings = func() (out [numDimensions]map[string]Unit) {
 			out[d] = map[string]Unit{}
 		}
 		for _, s := range append([]string{fold(e.unit.Name)}, e.also...) {
-			if _, taken := out[d][s]; taken {
-				panic("unit: two units of " + d.String() + " are spelled " + s)
-			}
 			out[d][s] = e.unit
 		}
 	}
@@ -107,7 +104,7 @@ var spellings = func() (out [numDimensions]map[string]Unit) {
 }()
 
 var folder = strings.NewReplacer(
-	"²", "2", "₂", "2", "³", "3", "⁻¹", "-1", "℃", "degc", "℉", "degf", "^", "", "**", "",
+	"²", "2", "₂", "2", "³", "3", "⁻¹", "-1", "ℓ", "l", "℃", "degc", "℉", "degf", "^", "", "**", "",
 	"°", "deg", "º", "deg", "·", "", "*", "", "−", "-", "″", `"`, "′", "'",
 	" per ", "/", "\u00a0", "", " ", "", "\t", "", "_", "", ".", "", ",", "",
 	"(", "", ")", "", "[", "", "]", "",

@@ -49,6 +49,7 @@ var (
 	Kilometre  = Unit{Name: "km", Dimension: Length, Factor: 1e3}
 	Inch       = Unit{Name: "in", Dimension: Length, Factor: inch}
 	Foot       = Unit{Name: "ft", Dimension: Length, Factor: foot}
+	SurveyFoot = Unit{Name: "US survey ft", Dimension: Length, Factor: 1200.0 / 3937} // retired end of 2022
 	Yard       = Unit{Name: "yd", Dimension: Length, Factor: yard}
 	Mile       = Unit{Name: "mi", Dimension: Length, Factor: mile}
 
@@ -135,6 +136,7 @@ var table = []entry{
 	{Kilometre, []string{"kilometre", "kilometer", "kilometres", "kilometers"}},
 	{Inch, []string{"inch", "inches", `"`}},
 	{Foot, []string{"foot", "feet", "'"}},
+	{SurveyFoot, []string{"ussurveyfoot", "ussurveyfeet", "surveyft", "surveyfoot", "surveyfeet", "usft", "ftus"}},
 	{Yard, []string{"yard", "yards"}},
 	{Mile, []string{"mile", "miles"}},
 
