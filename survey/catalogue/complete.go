@@ -16,7 +16,7 @@ import (
 // touched, and the spread is not filled: it has its own default.
 //
 // The age of a pipe is counted from the year it was laid to the survey's
-// as_new_year, else to the year of the last round.
+// as_new_year, else to the year of the last round or reading.
 //
 // Where no value can be given the Problem is Fatal and says what to write: a
 // material that is not in the table, the fitting kind other, a change of bore
@@ -74,27 +74,21 @@ func referenceYear(s *survey.Survey) float64 {
 	if s.Info.AsNewYear.OK {
 		return s.Info.AsNewYear.V
 	}
-	year := math.NaN()
+	latest := 0
 	for _, r := range s.Rounds {
 		if !r.Start.IsZero() {
-			year = math.Max(float64(r.Start.Year()), orElse(year, 0))
+			latest = max(latest, r.Start.Year())
 		}
 	}
-	if math.IsNaN(year) {
-		for _, r := range s.Readings {
-			if !r.Time.IsZero() {
-				year = math.Max(float64(r.Time.Year()), orElse(year, 0))
-			}
+	for _, r := range s.Readings {
+		if !r.Time.IsZero() {
+			latest = max(latest, r.Time.Year())
 		}
 	}
-	return year
-}
-
-func orElse(v, def float64) float64 {
-	if math.IsNaN(v) {
-		return def
+	if latest == 0 {
+		return math.NaN()
 	}
-	return v
+	return float64(latest)
 }
 
 func completePipe(p *survey.Pipe, law survey.FrictionLaw, year float64) survey.Problems {

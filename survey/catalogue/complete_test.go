@@ -22,7 +22,7 @@ func line(law survey.FrictionLaw, pipes []survey.Pipe, fittings ...survey.Fittin
 	}
 	return &survey.Survey{
 		Info:   survey.Info{FrictionLaw: law},
-		Rounds: []survey.Round{{Name: "A", Start: time.Date(2023, 3, 1, 8, 0, 0, 0, time.UTC)}, {Name: "B", Start: time.Date(2024, 3, 1, 8, 0, 0, 0, time.UTC)}, {Name: "C"}},
+		Rounds: []survey.Round{{Name: "B", Start: time.Date(2024, 3, 1, 8, 0, 0, 0, time.UTC)}, {Name: "A", Start: time.Date(2023, 3, 1, 8, 0, 0, 0, time.UTC)}, {Name: "C"}},
 		Pipes:  pipes, Fittings: fittings,
 	}
 }
@@ -78,8 +78,8 @@ func TestCompleteAge(t *testing.T) {
 	pipes := func() []survey.Pipe {
 		return []survey.Pipe{{Name: "P1", Bore: 0.2, Material: "cast iron", Laid: survey.Some(1944)}}
 	}
-	// The stated reference year comes before the rounds, the rounds before the
-	// readings; without any date the age is unknown, and 50 years.
+	// The stated reference year comes before the dates of rounds and readings;
+	// without any date the age is unknown, and 50 years.
 	for _, c := range []struct {
 		change func(*survey.Survey)
 		years  float64
@@ -127,6 +127,13 @@ func TestCompleteWrongLaw(t *testing.T) {
 
 	s = line(survey.HazenWilliams, []survey.Pipe{{Name: "P1", Bore: 0.3, Roughness: survey.Some(1e-3)}, {Name: "P2", Bore: 0.3, Roughness: survey.Some(1e-3)}})
 	mustSay(t, Complete(s), survey.Fatal, at("pipes.csv", 0), "roughness", "friction_law, darcy-weisbach")
+
+	// One pipe states both: the other is named alone.
+	s = line(survey.DarcyWeisbach, []survey.Pipe{{Name: "P1", Bore: 0.3, C: survey.Some(110), Roughness: survey.Some(1e-3)}, {Name: "P2", Bore: 0.3, C: survey.Some(120)}})
+	if ps = Complete(s); len(ps) != 1 {
+		t.Errorf("%v", ps)
+	}
+	mustSay(t, ps, survey.Fatal, at("pipes.csv", 3), "P2", "states a c_value")
 
 	// Some of them: each by name, with the figure that would do.
 	s = line(survey.DarcyWeisbach, []survey.Pipe{

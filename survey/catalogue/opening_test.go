@@ -44,7 +44,7 @@ rows:
 		k, open := number(t, c["K_on_pipe_velocity_head"]), number(t, c["opening_numeric"])
 		percent := 100 * open
 		if strings.HasPrefix(c["opening_measure"], "turn angle") {
-			percent = turned(open)
+			percent = 100 * (90 - open) / 90 // a quarter turn from open to shut
 		}
 		onCurve := false
 		for _, cv := range curves {
@@ -85,6 +85,14 @@ func TestGateValveScatter(t *testing.T) {
 		if len(sources) != 6 {
 			t.Errorf("%d tables", len(sources))
 		}
+	}
+}
+
+// Beyond every table only this is known: not further open than its last line.
+func TestNearlyShut(t *testing.T) {
+	low, high, _, ok := ValveOpenings(survey.GateValve, 5000)
+	if !ok || low != 0 || high != 12.5 {
+		t.Errorf("K 5000: %v to %v, want 0 to 12.5 %%", low, high)
 	}
 }
 

@@ -112,7 +112,7 @@ func ageOf(m material, age float64) float64 {
 	if math.IsNaN(age) && m.aged {
 		return m.age
 	}
-	return math.Max(0, age) // laid after the survey: as new; NaN stays NaN
+	return age
 }
 
 func (w wall) at(age float64) Entry {
@@ -124,7 +124,7 @@ func (w wall) at(age float64) Entry {
 		e.Note = w.note
 		age = w.unknownAge
 	}
-	if w.rusts && age > 0 {
+	if w.rusts && age > 0 { // laid after the survey: as new
 		e.Value += growth * age
 		e.Low += growthLow * age
 		e.High += growthHigh * age
