@@ -21,6 +21,8 @@ type curve struct {
 // turned is the opening at an angle from fully open, degrees.
 func turned(degrees float64) float64 { return 100 * (1 - degrees/90) }
 
+// The last two gate tables print half and quarter open only; their figures were
+// gathered as two lists and are paired in the order of those.
 var curves = []curve{
 	{survey.GateValve, []opening{{100, 0}, {87.5, 0.07}, {75, 0.26}, {62.5, 0.81}, {50, 2.06}, {37.5, 5.52}, {25, 17}, {12.5, 97.8}},
 		"Weisbach 1855 (round pipe), in Unwin 1911"},

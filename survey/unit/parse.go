@@ -86,7 +86,7 @@ func parse(name, folded string, d Dimension) (Unit, error) {
 }
 
 func refuse(name string, d Dimension, reason string) error {
-	return &NameError{Written: name, Dimension: d, Reason: reason, Nearest: nearest(fold(name), d), Accepted: d.Accepted()}
+	return &NameError{Written: name, Dimension: d, Reason: reason, Nearest: nearest(fold(name), d), Accepted: d.accepted()}
 }
 
 // spellings finds a unit by dimension and folded spelling.

@@ -103,7 +103,7 @@ func TestTable(t *testing.T) {
 		}
 	}
 	for d := range Dimension(numDimensions) {
-		if len(d.Accepted()) == 0 || d.String() == "" {
+		if len(d.accepted()) == 0 || d.String() == "" {
 			t.Errorf("dimension %d has no name or no units", d)
 		}
 	}

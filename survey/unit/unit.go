@@ -63,9 +63,9 @@ func (d Dimension) String() string {
 	return dimensionNames[d]
 }
 
-// Accepted lists the names of the units of this dimension, as they are printed,
+// accepted lists the names of the units of this dimension, as they are printed,
 // most usual first. Parse takes more spellings than these.
-func (d Dimension) Accepted() []string {
+func (d Dimension) accepted() []string {
 	var out []string
 	for _, e := range table {
 		if e.unit.Dimension == d && e.unit.Name != "" && !slices.Contains(out, e.unit.Name) {
