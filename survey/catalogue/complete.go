@@ -118,10 +118,10 @@ func completePipe(p *survey.Pipe, law survey.FrictionLaw, year float64) survey.P
 		age = year - p.Laid.V
 	}
 	e, ok := Roughness(p.Material, age)
-	value := fmt.Sprintf("%s mm (published %s to %s)", unit.Significant(1e3*e.Value, 2), unit.Significant(1e3*e.Low, 2), unit.Significant(1e3*e.High, 2))
+	value := fmt.Sprintf("%s mm (range %s to %s)", unit.Significant(1e3*e.Value, 2), unit.Significant(1e3*e.Low, 2), unit.Significant(1e3*e.High, 2))
 	if law == survey.HazenWilliams {
 		e, ok = HazenWilliams(p.Material, age, p.Bore)
-		value = fmt.Sprintf("%s (published roughnesses give %s to %s)", unit.Significant(e.Value, 3), unit.Significant(e.Low, 2), unit.Significant(e.High, 3))
+		value = fmt.Sprintf("%s (range %s to %s)", unit.Significant(e.Value, 3), unit.Significant(e.Low, 2), unit.Significant(e.High, 3))
 	}
 	if !ok {
 		problem.Column, problem.Text = "material", p.Material
@@ -206,7 +206,7 @@ func completeFitting(f *survey.Fitting, p *survey.Pipe) survey.Problems {
 	f.FromTable = "built-in table, " + string(f.Kind) + ": " + e.Source
 	return survey.Problems{{
 		Source: f.Source, Severity: survey.Notice, Column: "loss_coefficient",
-		Reason: fmt.Sprintf("fitting %s states none: K %s taken for %s (published %s to %s)%s", f.Name,
+		Reason: fmt.Sprintf("fitting %s states none: K %s taken for %s (range %s to %s)%s", f.Name,
 			unit.Significant(e.Value, 2), f.Kind, unit.Significant(e.Low, 2), unit.Significant(e.High, 2), because(e.Note)),
 		Remedy: "write the loss_coefficient where it is known better",
 	}}

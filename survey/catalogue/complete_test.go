@@ -61,7 +61,7 @@ func TestCompletePipes(t *testing.T) {
 	if k := s.Pipes[1].Roughness; k != survey.Some(0.03e-3) {
 		t.Errorf("P2: %+v", k)
 	}
-	mustSay(t, ps, survey.Notice, at("pipes.csv", 2), "pipes.csv:2, roughness", "P1", "2.3 mm", "published", "80 years old")
+	mustSay(t, ps, survey.Notice, at("pipes.csv", 2), "pipes.csv:2, roughness", "P1", "2.3 mm", "range 0.53 to 6.7", "80 years old")
 	mustSay(t, ps, survey.Notice, at("pipes.csv", 3), "P2", "0.030 mm")
 	if !strings.Contains(s.Pipes[0].FromTable, "White") || !strings.Contains(s.Pipes[0].FromTable, "80 years") || s.Pipes[2].FromTable != "" || s.Pipes[3].FromTable != "" {
 		t.Errorf("sources: %q, %q, %q", s.Pipes[0].FromTable, s.Pipes[2].FromTable, s.Pipes[3].FromTable)
@@ -189,7 +189,7 @@ func TestCompleteFittings(t *testing.T) {
 			t.Errorf("%s: from %q", f.Name, f.FromTable)
 		}
 	}
-	mustSay(t, ps, survey.Notice, at("fittings.csv", 2), "loss_coefficient", "V1", "K 0.17", "published 0.096 to 0.30")
+	mustSay(t, ps, survey.Notice, at("fittings.csv", 2), "loss_coefficient", "V1", "K 0.17", "range 0.096 to 0.30")
 	mustSay(t, ps, survey.Notice, at("fittings.csv", 4), "C1", "K 0.13", "sudden")
 }
 
