@@ -1,0 +1,245 @@
+package calibrate
+
+import (
+	"errors"
+	"fmt"
+	"math"
+
+	"gonum.org/v1/gonum/mat"
+
+	"tapround/calibrate/lsq"
+)
+
+// Fit is an estimate with all that is needed to judge it. Look at Converged
+// first: nothing may be concluded from a fit that did not settle.
+type Fit struct {
+	Model *Model
+	// Unknowns are those of sound works, then the causes that were allowed.
+	Unknowns []Unknown
+	Causes   int
+	// U is the estimate in prior standard deviations from the prior means.
+	U []float64
+	// Phi is the least sum of squares, readings and prior rows.
+	Phi        float64
+	Status     string
+	Converged  bool
+	Iterations int
+	Rank       int
+	Condition  float64
+	AtBound    []bool
+	// J holds the whitened derivatives of the readings at the estimate, one row
+	// for each observation; R the whitened differences, predicted minus measured.
+	J *mat.Dense
+	R []float64
+
+	spread []float64 // prior variance of each unknown in U: 1, or freeCause squared
+	weight []float64 // per observation: 1, 0 where left out, or a robust weight
+	data   *mat.Cholesky
+	cov    *mat.SymDense
+	work   *Workspace
+	trial  *Workspace
+}
+
+// Options of one fit.
+type Options struct {
+	// FreeCauses all but takes the prior rows of the causes away, so that the
+	// drop of Phi is the generalised likelihood ratio of the cause.
+	FreeCauses bool
+	// Start is the starting point in U; nil: prior means and each unknown's Start.
+	Start []float64
+	// Weight divides each observation's own variance; 0 leaves it out; nil: all 1.
+	Weight []float64
+}
+
+// freeCause widens the prior of a cause that is left free. Thirty spreads leave
+// 1/900 of its prior row, which moves Phi by less than 0.01 for any cause of
+// plausible size, and keeps the problem determined.
+const freeCause = 30
+
+// logReach bounds how far ln roughness and ln K may run: e^9 is a factor of 8,000,
+// beyond any pipe or valve that still passes water.
+const logReach = 9
+
+// Fit estimates the unknowns of sound works together with the causes given, by
+// trust-region least squares on the QR factors of the stacked Jacobian.
+func (m *Model) Fit(causes []Unknown, o Options) (*Fit, error) {
+	f, err := m.prepare(causes, o)
+	if err != nil {
+		return nil, err
+	}
+	n, k := len(m.Obs), len(f.U)
+	p := lsq.Problem{M: n + k, N: k, Lower: make([]float64, k), Upper: make([]float64, k),
+		Residuals: func(u, r []float64) error {
+			if err := f.evaluate(u, r[:n]); err != nil {
+				return err
+			}
+			for c := range u {
+				r[n+c] = u[c] / math.Sqrt(f.spread[c])
+			}
+			return nil
+		},
+		Jacobian: func(u []float64, j *mat.Dense) error {
+			j.Zero()
+			for c := range u {
+				j.Set(n+c, c, 1/math.Sqrt(f.spread[c]))
+			}
+			return f.derive(u, j)
+		},
+	}
+	for c, x := range f.Unknowns {
+		p.Lower[c], p.Upper[c] = x.bounds()
+	}
+	res, err := lsq.Solve(p, f.U, lsq.Settings{})
+	if err != nil {
+		return nil, err
+	}
+	f.U, f.Phi = res.X, res.SumSquares
+	f.Status, f.Converged = res.Status.String(), res.Status.OK()
+	f.Iterations, f.Rank, f.Condition, f.AtBound = res.Iterations, res.Rank, res.Condition, res.AtBound
+	return f, f.settle()
+}
+
+// prepare makes the empty fit: unknowns, starting point, prior variances, weights.
+func (m *Model) prepare(causes []Unknown, o Options) (*Fit, error) {
+	if len(m.Obs) == 0 {
+		return nil, errors.New("no reading can be used, so there is nothing to fit")
+	}
+	f := &Fit{Model: m, Causes: len(causes), work: m.NewWorkspace()}
+	f.Unknowns = append(append(f.Unknowns, m.Unknowns...), causes...)
+	k := len(f.Unknowns)
+	f.U, f.spread, f.AtBound = make([]float64, k), make([]float64, k), make([]bool, k)
+	f.R, f.J = make([]float64, len(m.Obs)), mat.NewDense(len(m.Obs), k, nil)
+	for c, x := range f.Unknowns {
+		f.spread[c] = 1
+		if o.FreeCauses && c >= len(m.Unknowns) {
+			f.spread[c] = freeCause * freeCause
+		}
+		f.U[c] = x.Start / x.SD
+		if c < len(o.Start) {
+			f.U[c] = o.Start[c]
+		}
+		lo, hi := x.bounds()
+		f.U[c] = clamp(f.U[c], lo, hi)
+	}
+	f.weight = o.Weight
+	return f, nil
+}
+
+// evaluate fills r with the whitened differences of the readings at u.
+func (f *Fit) evaluate(u, r []float64) error {
+	f.work.set(f.Unknowns, u)
+	if err := f.work.solve(); err != nil {
+		return err
+	}
+	return f.work.differences(f.weight, r)
+}
+
+// derive fills the first rows of j with the whitened derivatives at u.
+func (f *Fit) derive(u []float64, j *mat.Dense) error {
+	f.work.set(f.Unknowns, u)
+	if err := f.work.solve(); err != nil {
+		return err
+	}
+	return f.work.derivatives(f.weight, f.Unknowns, j)
+}
+
+// settle leaves everything evaluated at the estimate and factorises the data-space
+// covariance V = I + J P J'.
+func (f *Fit) settle() error {
+	if err := f.evaluate(f.U, f.R); err != nil {
+		return err
+	}
+	if err := f.derive(f.U, f.J); err != nil {
+		return err
+	}
+	for c, x := range f.Unknowns {
+		lo, hi := x.bounds()
+		f.AtBound[c] = f.U[c] <= lo || f.U[c] >= hi
+	}
+	f.cov = nil
+	var err error
+	f.data, err = f.dataCovariance(f.J)
+	return err
+}
+
+// dataCovariance factorises V = I + J P J', the covariance of the whitened
+// readings under the priors. It is positive definite by construction.
+func (f *Fit) dataCovariance(j *mat.Dense) (*mat.Cholesky, error) {
+	n, k := j.Dims()
+	scaled := mat.NewDense(n, k, nil)
+	for i := 0; i < n; i++ {
+		src, dst := j.RawRowView(i), scaled.RawRowView(i)
+		for c := range src {
+			dst[c] = src[c] * math.Sqrt(f.spread[c])
+			if f.AtBound[c] {
+				dst[c] = 0 // an unknown on its bound is not free to move
+			}
+		}
+	}
+	v := mat.NewSymDense(n, nil)
+	v.SymOuterK(1, scaled)
+	for i := 0; i < n; i++ {
+		v.SetSym(i, i, v.At(i, i)+1)
+	}
+	var ch mat.Cholesky
+	if !ch.Factorize(v) {
+		return nil, fmt.Errorf("the covariance of the %d readings cannot be factorised; a reading has no finite uncertainty", n)
+	}
+	return &ch, nil
+}
+
+// LnDet is ln det(I + J P J') = ln det(P) + ln det(P^-1 + J'J) (Sylvester), which
+// the evidence of a cause needs.
+func (f *Fit) LnDet() float64 { return f.data.LogDet() }
+
+// Cov is the covariance of U: P - P J' V^-1 J P, equal to (P^-1 + J'J)^-1.
+func (f *Fit) Cov() *mat.SymDense {
+	if f.cov != nil {
+		return f.cov
+	}
+	n, k := f.J.Dims()
+	jp := mat.NewDense(n, k, nil)
+	for i := 0; i < n; i++ {
+		src, dst := f.J.RawRowView(i), jp.RawRowView(i)
+		for c := range src {
+			if !f.AtBound[c] {
+				dst[c] = src[c] * f.spread[c]
+			}
+		}
+	}
+	// With V = L L', C = P - (L^-1 J P)'(L^-1 J P): no inverse is formed.
+	var l mat.TriDense
+	f.data.LTo(&l)
+	var half mat.Dense
+	if err := half.Solve(&l, jp); err != nil {
+		// V is at least the unit matrix, so its factor cannot be singular.
+		panic("calibrate: " + err.Error())
+	}
+	c := mat.NewSymDense(k, nil)
+	c.SymOuterK(-1, half.T())
+	for i := range f.spread {
+		if !f.AtBound[i] {
+			c.SetSym(i, i, math.Max(0, c.At(i, i)+f.spread[i]))
+		}
+	}
+	f.cov = c
+	return c
+}
+
+// bounds of an unknown in prior standard deviations.
+func (x Unknown) bounds() (lo, hi float64) {
+	lo, hi = math.Inf(-1), math.Inf(1)
+	if x.Log {
+		lo, hi = -logReach/x.SD, logReach/x.SD
+	}
+	if x.Quantity == "head_factor" {
+		lo, hi = -0.95/x.SD, 3/x.SD // a machine that gives nothing at all is stopped
+	}
+	if x.Sign > 0 {
+		lo = 0
+	}
+	if x.Sign < 0 {
+		hi = 0
+	}
+	return lo, hi
+}

@@ -1,0 +1,186 @@
+package calibrate
+
+import (
+	"container/heap"
+	"fmt"
+	"math"
+	"strings"
+)
+
+// RouteThrough is the shortest way that passes the places named, in their order:
+// points or taps. An error names the place that is unknown or cannot be reached.
+func (m *Model) RouteThrough(places []string) (Way, error) {
+	if len(places) < 2 {
+		return Way{}, fmt.Errorf("a route needs at least two places, got %d", len(places))
+	}
+	var out Way
+	at, err := m.pointNear(places[0])
+	if err != nil {
+		return Way{}, err
+	}
+	out.Points = []int{at}
+	for _, name := range places[1:] {
+		to, err := m.pointNear(name)
+		if err != nil {
+			return Way{}, err
+		}
+		w, ok := m.shortest(at)[to]
+		if !ok {
+			return Way{}, fmt.Errorf("no pipe leads from %s to %s", m.Survey.Points[at].Name, m.Survey.Points[to].Name)
+		}
+		out.Legs = append(out.Legs, w.Legs...)
+		out.Points = append(out.Points, w.Points[1:]...)
+		out.Length += w.Length
+		at = to
+	}
+	return out, nil
+}
+
+// pointNear is a point by its name, or the point nearest a tap.
+func (m *Model) pointNear(name string) (int, error) {
+	if p, ok := m.points[name]; ok {
+		return p, nil
+	}
+	if t, ok := m.taps[name]; ok {
+		tap := m.Survey.Taps[t]
+		if tap.Point != "" {
+			return m.points[tap.Point], nil
+		}
+		l := m.links[tap.Pipe]
+		from, to := m.endsOf(l)
+		if tap.At <= m.lengthOf(l)/2 {
+			return from, nil
+		}
+		return to, nil
+	}
+	return 0, fmt.Errorf("%q is neither a point nor a tap of this survey; its points are %s", name, m.someNames())
+}
+
+func (m *Model) someNames() string {
+	var names []string
+	for i, p := range m.Survey.Points {
+		if i == 12 {
+			names = append(names, "...")
+			break
+		}
+		names = append(names, p.Name)
+	}
+	return strings.Join(names, ", ")
+}
+
+// shortest gives the shortest way by length from a point to every other.
+func (m *Model) shortest(from int) map[int]Way {
+	ends := m.linksAt()
+	out := map[int]Way{}
+	q := &frontier{}
+	heap.Push(q, Way{Points: []int{from}})
+	for q.Len() > 0 {
+		w := heap.Pop(q).(Way)
+		p := w.Points[len(w.Points)-1]
+		if _, done := out[p]; done {
+			continue
+		}
+		out[p] = w
+		for _, l := range ends[p] {
+			a, b := m.endsOf(l)
+			if a == p {
+				heap.Push(q, w.extend(Leg{l, math.Inf(-1), math.Inf(1)}, b, m.lengthOf(l)))
+			} else {
+				heap.Push(q, w.extend(Leg{l, math.Inf(1), math.Inf(-1)}, a, m.lengthOf(l)))
+			}
+		}
+	}
+	return out
+}
+
+// MainRoutes are the ways worth a picture: from a reservoir, each the one that
+// passes most taps not yet on a route, at most the number given.
+func (m *Model) MainRoutes(most int) []Way {
+	onRoute := make([]bool, len(m.Survey.Taps))
+	var out []Way
+	var all []Way
+	for i, p := range m.Survey.Points {
+		if p.Kind != "reservoir" {
+			continue
+		}
+		ways := m.shortest(i)
+		for j := range m.Survey.Points {
+			if w, ok := ways[j]; ok && len(w.Legs) > 0 {
+				all = append(all, w)
+			}
+		}
+	}
+	for len(out) < most {
+		best, gain := -1, 0
+		for i, w := range all {
+			n := 0
+			for t := range m.Survey.Taps {
+				if _, ok := m.ChainageOfTap(w, t); ok && !onRoute[t] && !m.isMeter(t) {
+					n++
+				}
+			}
+			if n > gain || (n == gain && n > 0 && w.Length > all[best].Length) {
+				best, gain = i, n
+			}
+		}
+		// One new tap does not make a picture of its own, unless it is the first.
+		if best < 0 || (gain < 2 && len(out) > 0) {
+			break
+		}
+		out = append(out, all[best])
+		for t := range onRoute {
+			if _, ok := m.ChainageOfTap(all[best], t); ok {
+				onRoute[t] = true
+			}
+		}
+	}
+	return out
+}
+
+// isMeter reports whether only flows are read at a tap.
+func (m *Model) isMeter(tap int) bool {
+	seen := false
+	for _, o := range m.Obs {
+		if o.tap == tap {
+			if o.Head.Quantity != "flow" {
+				return false
+			}
+			seen = true
+		}
+	}
+	return seen
+}
+
+// ChainageOfTap is the distance of a tap along a way.
+func (m *Model) ChainageOfTap(w Way, tap int) (float64, bool) {
+	t := m.Survey.Taps[tap]
+	if t.Point != "" {
+		x := 0.0
+		for i, p := range w.Points {
+			if p == m.points[t.Point] {
+				return x, true
+			}
+			if i < len(w.Legs) {
+				x += m.lengthOf(w.Legs[i].Link)
+			}
+		}
+		return 0, false
+	}
+	return m.ChainageAt(w, m.links[t.Pipe], t.At)
+}
+
+// ChainageAt is the distance along a way of a chainage on a link.
+func (m *Model) ChainageAt(w Way, link int, at float64) (float64, bool) {
+	x := 0.0
+	for _, l := range w.Legs {
+		length := m.lengthOf(l.Link)
+		if l.Link == link {
+			if l.X1 > l.X2 {
+				return x + length - at, true
+			}
+			return x + at, true
+		}
+		x += length
+	}
+	return 0, false
+}
