@@ -1,0 +1,332 @@
+package fault
+
+import (
+	"fmt"
+	"math"
+	"sort"
+	"strings"
+
+	"tapround/calibrate"
+	"tapround/survey"
+	"tapround/survey/unit"
+)
+
+// Findings turns the diagnosis into findings, the best supported first, numbered
+// F1, F2, ...
+func (d *Diagnosis) Findings() []survey.Finding {
+	var out []survey.Finding
+	for i := range d.Accepted {
+		a := &d.Accepted[i]
+		if a.Kind == misread {
+			continue // named among the readings, see Misreadings
+		}
+		out = append(out, d.finding(a))
+	}
+	out = append(out, d.hints()...)
+	out = append(out, d.belowAtmosphere()...)
+	out = append(out, d.notCovered()...)
+	for i := range out {
+		out[i].ID = fmt.Sprintf("F%d", i+1)
+	}
+	return out
+}
+
+// lossKind reports whether a kind is a loss of head somewhere on the works.
+func lossKind(k survey.FindingKind) bool {
+	return k == survey.FouledPipe || k == survey.PartClosedValve || k == survey.BlockedFitting
+}
+
+func (d *Diagnosis) finding(a *Accepted) survey.Finding {
+	f := survey.Finding{Kind: a.Kind, Item: a.Item, Statistic: a.T, Limit: d.Limit * d.Limit, Probability: survey.Some(a.Probability)}
+	d.size(a, &f)
+	f.Excess = d.excess(a)
+	for _, r := range d.Model.Rounds {
+		f.Rounds = append(f.Rounds, r.Name)
+	}
+	for _, r := range a.Class {
+		f.CannotBeToldFrom = append(f.CannotBeToldFrom, r.Name())
+	}
+	f.Grade = d.grade(a)
+	d.evidence(a, &f)
+	if len(a.Class) > 0 && lossKind(a.Kind) {
+		d.open(a, &f)
+	}
+	d.words(a, &f)
+	f.Sources = d.sources(a)
+	return f
+}
+
+// grade: proven asks for all of: beyond the family-wise limit (it was accepted),
+// alone, more than nine in ten, and a final fit that the readings do not
+// contradict. An open cause is proven as a loss when nothing but its members can
+// explain it.
+func (d *Diagnosis) grade(a *Accepted) survey.Grade {
+	p, ok := d.Final.GlobalP()
+	fits := !ok || p > 0.01
+	whole := a.Probability
+	for _, r := range a.Class {
+		whole += r.Probability
+	}
+	told := d.Final.Told(a.place)
+	switch {
+	case math.IsNaN(a.Probability):
+		return survey.Hint
+	case whole > 0.9 && a.None < 0.2 && fits && d.Final.Converged && told >= 0.2 && (len(a.Class) > 0 || d.mixUp(a) < 0.1):
+		return survey.Proven
+	case whole > 0.5:
+		return survey.Likely
+	}
+	return survey.Hint
+}
+
+// mixUp is the greatest chance that a rival of the same signature won by luck.
+func (d *Diagnosis) mixUp(a *Accepted) float64 {
+	worst := 0.0
+	for _, r := range a.Others {
+		if r.LnOdds < 6 {
+			worst = math.Max(worst, math.Exp(-r.LnOdds)/(1+math.Exp(-r.LnOdds)))
+		}
+	}
+	return worst
+}
+
+// size fills estimate and interval in the item's own quantity.
+func (d *Diagnosis) size(a *Accepted, f *survey.Finding) {
+	m, fit := d.Model, d.Final
+	set := func(v, lo, hi float64, u string) {
+		f.Estimate, f.Low, f.High, f.Unit = survey.Some(v), survey.Some(lo), survey.Some(hi), u
+	}
+	theta, sd := fit.Theta(a.place), fit.ThetaSD(a.place)
+	switch a.Kind {
+	case survey.FouledPipe:
+		l := m.LinkIndex(a.Item)
+		v := fit.LnRough(l)
+		s := d.itemSD(a)
+		if m.Survey.Info.FrictionLaw == survey.HazenWilliams {
+			s = math.Hypot(s, 2.63*m.Priors.LnBore)
+			set(math.Exp(v), math.Exp(v-1.96*s), math.Exp(v+1.96*s), "C")
+			f.Expected = survey.Some(math.Exp(m.ExpectedLnRough(l)))
+			return
+		}
+		// Bore and the friction law are not unknowns: 1 % of bore is 5 % of
+		// loss, and both act on ln k through d ln f / d ln k.
+		s = math.Hypot(s, math.Hypot(m.Priors.FrictionLaw, 5*m.Priors.LnBore)/math.Max(0.05, d.slope(l)))
+		set(1e3*math.Exp(v), 1e3*math.Exp(v-1.96*s), 1e3*math.Exp(v+1.96*s), "mm")
+		f.Expected = survey.Some(1e3 * math.Exp(m.ExpectedLnRough(l)))
+	case survey.PartClosedValve, survey.BlockedFitting:
+		flat := m.FlatFitting(a.Item)
+		v := fit.LnKOf(flat)
+		s := d.itemSD(a)
+		set(math.Exp(v), math.Exp(v-1.96*s), math.Exp(v+1.96*s), "K")
+		f.Expected = survey.Some(math.Exp(m.ExpectedLnK(flat)))
+	case survey.GaugeOff:
+		g := m.GaugeNamed(a.Item)
+		if a.Unknown.Quantity == "gain" {
+			set(100*theta, 100*(theta-1.96*sd), 100*(theta+1.96*sd), "%")
+			return
+		}
+		total, s := fit.ItemTheta(a.place)
+		u := gaugeUnit(g)
+		set(u.FromSIDifference(total), u.FromSIDifference(total-1.96*s), u.FromSIDifference(total+1.96*s), g.Unit)
+	case survey.LevelWrong:
+		if a.Unknown.Kind == "level" {
+			// A reservoir's theta is true minus recorded; a level error is
+			// recorded minus true.
+			set(-theta, -theta-1.96*sd, -theta+1.96*sd, "m")
+			return
+		}
+		total, s := fit.ItemTheta(a.place)
+		set(total, total-1.96*s, total+1.96*s, "m")
+	case survey.UnrecordedFlow:
+		set(1e3*theta, 1e3*(theta-1.96*sd), 1e3*(theta+1.96*sd), "L/s")
+	case survey.MachineOffCurve:
+		total, s := fit.ItemTheta(a.place)
+		set(1+total, 1+total-1.96*s, 1+total+1.96*s, "factor")
+		f.Expected = survey.Some(1)
+	}
+}
+
+// itemSD is the SD of the logarithm of an item's whole value: its sound scatter and
+// the cause together.
+func (d *Diagnosis) itemSD(a *Accepted) float64 {
+	_, sd := d.Final.ItemTheta(a.place)
+	return sd
+}
+
+// slope is d ln f / d ln k at the largest fitted flow.
+func (d *Diagnosis) slope(link int) float64 {
+	r, q := d.busiest(link)
+	c := d.Final.Conditions(r)
+	l := d.Model.System.Link(link).Pipe.Loss(q, d.Final.LnRough(link), c.Viscosity, c.Gravity)
+	if l.H == 0 {
+		return 0.2
+	}
+	return l.DParam / l.H
+}
+
+// busiest is the round in which a link carries most, and that flow's size.
+func (d *Diagnosis) busiest(link int) (round int, flow float64) {
+	for r := range d.Model.Rounds {
+		if q := math.Abs(d.Final.FlowOf(r, link)); q > flow {
+			flow, round = q, r
+		}
+	}
+	return round, flow
+}
+
+func gaugeUnit(g survey.Gauge) unit.Unit {
+	dim := unit.Pressure
+	switch g.Kind {
+	case survey.FlowMeter:
+		dim = unit.Flow
+	case survey.LevelGauge:
+		dim = unit.Length
+	}
+	u, err := unit.Parse(g.Unit, dim)
+	if err != nil {
+		return unit.Unit{Name: g.Unit, Factor: 1} // the reader has refused such a gauge already
+	}
+	return u
+}
+
+// excess is the head that a cause costs in each round, m: fitted minus expected
+// loss of the item at the fitted flow, in the flow's direction; for a gauge or a
+// level what it falsifies the head by.
+func (d *Diagnosis) excess(a *Accepted) []survey.AtRound {
+	var out []survey.AtRound
+	for r, round := range d.Model.Rounds {
+		v := math.NaN()
+		switch a.Kind {
+		case survey.FouledPipe, survey.PartClosedValve, survey.BlockedFitting:
+			v = d.Final.ItemExcess(r, a.Unknown.Kind, a.Item)
+		case survey.LevelWrong:
+			v = d.Final.Theta(a.place)
+		case survey.GaugeOff:
+			if g := d.Model.GaugeNamed(a.Item); g.Kind != survey.FlowMeter && a.Unknown.Quantity == "offset" {
+				v = d.Final.Theta(a.place) / (round.Density * d.Final.Conditions(r).Gravity)
+			}
+		}
+		if !math.IsNaN(v) {
+			out = append(out, survey.AtRound{Round: round.Name, Value: v})
+		}
+	}
+	return out
+}
+
+// open turns a finding into an open cause between the taps around it.
+func (d *Diagnosis) open(a *Accepted, f *survey.Finding) {
+	f.CannotBeToldFrom = append([]string{a.Name()}, f.CannotBeToldFrom...)
+	whole := a.Probability
+	for _, r := range a.Class {
+		whole += r.Probability
+	}
+	f.Kind, f.Probability = survey.CauseOpen, survey.Some(math.Min(1, whole))
+	from, to := d.around(a)
+	f.Item = from + ".." + to
+	// The item's own quantity has no meaning for a class: what is determined is
+	// the head it costs.
+	f.Expected, f.Unit = survey.Maybe{}, "m"
+	most := f.LargestExcess()
+	f.Estimate, f.Low, f.High = most, survey.Maybe{}, survey.Maybe{}
+	if most.OK {
+		// Relative uncertainty of the excess head from the statistic: z = size/SD.
+		sd := math.Abs(most.V) / math.Sqrt(math.Max(1, a.T))
+		f.Low, f.High = survey.Some(most.V-1.96*sd), survey.Some(most.V+1.96*sd)
+	}
+}
+
+// around names the taps next to the members of a class, or the ends of the pipe
+// where no tap stands beyond.
+func (d *Diagnosis) around(a *Accepted) (from, to string) {
+	pipe := d.pipeOf(a.Cause)
+	best, hits := calibrate.Loss{}, 0
+	for _, l := range d.Final.Losses() {
+		n := 0
+		for _, it := range l.Items {
+			if it == a.Item {
+				n += 10
+			}
+			for _, r := range a.Class {
+				if it == r.Item {
+					n++
+				}
+			}
+		}
+		if n > hits {
+			best, hits = l, n
+		}
+	}
+	if hits >= 10 {
+		return best.FromTap, best.ToTap
+	}
+	for _, p := range d.Model.Survey.Pipes {
+		if p.Name == pipe {
+			return p.From, p.To
+		}
+	}
+	return a.Item, a.Item
+}
+
+func (d *Diagnosis) pipeOf(c Cause) string {
+	for _, f := range d.Model.Survey.Fittings {
+		if f.Name == c.Item && c.Unknown.Kind == "fitting" {
+			return f.Pipe
+		}
+	}
+	return c.Item
+}
+
+// sources are the rows that carry the cause: the readings whose whitened signature
+// is largest.
+func (d *Diagnosis) sources(a *Accepted) []survey.Source {
+	type weight struct {
+		i int
+		w float64
+	}
+	var ws []weight
+	for i := range d.Model.Obs {
+		ws = append(ws, weight{i, math.Abs(d.Final.J.At(i, a.place))})
+	}
+	sort.SliceStable(ws, func(i, j int) bool { return ws[i].w > ws[j].w })
+	var out []survey.Source
+	for _, w := range ws {
+		if len(out) >= 6 || w.w < 0.2*ws[0].w {
+			break
+		}
+		out = append(out, d.Model.Obs[w.i].Head.Sources()...)
+	}
+	return out
+}
+
+func (d *Diagnosis) evidence(a *Accepted, f *survey.Finding) {
+	f.Evidence = append(f.Evidence, fmt.Sprintf(
+		"allowing this cause lowers the sum of squares by %.1f; chance alone reaches %.1f in one sound survey of %s (%d causes tested)",
+		a.T, d.Limit*d.Limit, oneIn(d.set.FalseAlarm), d.Tests))
+	for i, r := range append(append([]Rival(nil), a.Class...), a.Others...) {
+		if i >= 4 {
+			break
+		}
+		word := "fits less well"
+		if i < len(a.Class) {
+			word = "fits as well"
+		}
+		f.Rivals = append(f.Rivals, fmt.Sprintf("%s %s: odds %s", strings.ReplaceAll(string(r.Kind), "-", " "), r.Item, oddsWord(r.LnOdds))+" ("+word+")")
+	}
+	if a.None > 0.05 {
+		f.Rivals = append(f.Rivals, fmt.Sprintf("none of the causes looked for: probability %.0f %%", 100*a.None))
+	}
+}
+
+func oneIn(rate float64) string { return fmt.Sprintf("%.0f", 1/rate) }
+
+func oddsWord(ln float64) string {
+	switch {
+	case ln > 20:
+		return "over a million to one against it"
+	case ln > 0.7:
+		return fmt.Sprintf("%.0f to 1 against it", math.Exp(ln))
+	case ln > -0.7:
+		return "about even"
+	}
+	return fmt.Sprintf("%.0f to 1 for it", math.Exp(-ln))
+}

@@ -1,0 +1,202 @@
+package fault
+
+import (
+	"fmt"
+	"math"
+	"sort"
+
+	"tapround/calibrate/hydraulic"
+	"tapround/survey"
+	"tapround/survey/unit"
+)
+
+// hints lists causes that are in the false-discovery list at 10 per cent [BH] but
+// that the search did not accept and no accepted cause explains: worth a look.
+func (d *Diagnosis) hints() []survey.Finding {
+	if len(d.Accepted) > 0 || !d.Sound.Converged {
+		return nil // after a large fault the small z of the sound fit mean nothing
+	}
+	type item struct {
+		i int
+		p float64
+	}
+	var list []item
+	for i, c := range d.Causes {
+		if d.Z[i] == 0 || c.Kind == misread {
+			continue
+		}
+		p := math.Erfc(math.Abs(d.Z[i]) / math.Sqrt2)
+		if s := float64(c.Unknown.Sign); s != 0 {
+			p = 0.5 * math.Erfc(d.Z[i]*s/math.Sqrt2)
+		}
+		list = append(list, item{i, p})
+	}
+	sort.SliceStable(list, func(a, b int) bool { return list[a].p < list[b].p })
+	last := -1
+	for r := range list {
+		if list[r].p <= 0.10*float64(r+1)/float64(len(list)) {
+			last = r
+		}
+	}
+	var out []survey.Finding
+	for r := 0; r <= last && r < 3; r++ {
+		c := d.Causes[list[r].i]
+		out = append(out, survey.Finding{Kind: c.Kind, Item: c.Item, Grade: survey.Hint,
+			Statistic: d.Z[list[r].i] * d.Z[list[r].i], Limit: d.Limit * d.Limit,
+			Statement: fmt.Sprintf("Worth a look, no more: the readings lean towards %s, within what chance can do.", plain(c)),
+			Evidence:  []string{fmt.Sprintf("p = %s of a single test, %d causes tested", unit.Significant(list[r].p, 1), d.Tests)},
+			Advice:    "Nothing to do now; read it again next round."})
+	}
+	return out
+}
+
+// belowAtmosphere flags places where the fitted piezometric line runs under the
+// pipe: air is drawn in, and readings there do not obey the law of a full pipe.
+func (d *Diagnosis) belowAtmosphere() []survey.Finding {
+	m, f := d.Model, d.Final
+	type low struct {
+		depth  float64
+		rounds []string
+		where  string
+	}
+	worst := map[string]*low{}
+	var order []string
+	note := func(pipe, where, round string, depth float64) {
+		if worst[pipe] == nil {
+			worst[pipe] = &low{}
+			order = append(order, pipe)
+		}
+		w := worst[pipe]
+		if len(w.rounds) == 0 || w.rounds[len(w.rounds)-1] != round {
+			w.rounds = append(w.rounds, round)
+		}
+		if depth > w.depth {
+			w.depth, w.where = depth, where
+		}
+	}
+	for r, round := range m.Rounds {
+		for _, p := range m.Places() {
+			e := f.Read(r, hydraulic.Probe{Point: -1, Link: p.Link, At: p.At, View: hydraulic.Piezometric, Depth: math.NaN()})
+			// Three standard uncertainties, of the fitted line and of a level to
+			// a quarter of a metre: long sections are seldom better.
+			if !math.IsNaN(e.SD) && p.Elevation-e.Value > 3*math.Hypot(e.SD, 0.25) {
+				note(m.Survey.Pipes[p.Link].Name, fmt.Sprintf("%.0f m from its start", p.At), round.Name, p.Elevation-e.Value)
+			}
+		}
+	}
+	var out []survey.Finding
+	for _, pipe := range order {
+		w := worst[pipe]
+		out = append(out, survey.Finding{Kind: survey.BelowAtmosphere, Item: pipe, Grade: survey.Likely, Rounds: w.rounds, Unit: "m",
+			Estimate:  survey.Some(w.depth),
+			Statement: fmt.Sprintf("The piezometric line runs up to %s m under pipe %s (%s): the pressure there is below atmosphere.", unit.Significant(w.depth, 2), pipe, w.where),
+			Advice:    "Do not draw this much again; look for air valves and for dirty water that could be drawn in. Readings beyond this place may belong to a line that is not full.",
+			Cautions:  []string{"Water outside the pipe can be drawn in through leaks and air valves while it is below atmosphere (common practice).", cautionLocal}})
+	}
+	return out
+}
+
+// notCovered lists the pipes, valves and strainers of which the survey says
+// nothing: a fault of practical size would have been missed four times in five.
+func (d *Diagnosis) notCovered() []survey.Finding {
+	var out []survey.Finding
+	for _, s := range d.Smallest() {
+		if s.Practical {
+			continue
+		}
+		f := survey.Finding{Kind: survey.NotCovered, Item: s.Item, Grade: survey.Hint, Unit: s.Unit,
+			Statement: fmt.Sprintf("The readings say nothing about %s %s: %s.", s.Kind, s.Item, s.Words),
+			Advice:    "No fault found here is not the same as sound: read taps either side of it at a larger flow."}
+		if s.Seen {
+			f.Estimate = survey.Some(s.Value)
+		}
+		out = append(out, f)
+	}
+	return out
+}
+
+// Smallest is the smallest fault of one item that this survey finds with 80 % power.
+type Smallest struct {
+	Kind, Item string
+	Seen       bool    // the readings see it at all
+	Practical  bool    // it is of a size worth finding
+	Value      float64 // in Unit: mm, C, K
+	Unit       string
+	Words      string
+}
+
+// power80 is the normal quantile that 80 % power adds to a limit.
+const power80 = 0.8416
+
+// Smallest gives it for every pipe and every valve or strainer, from the linear
+// signatures at the sound fit.
+func (d *Diagnosis) Smallest() []Smallest {
+	var out []Smallest
+	if !d.Sound.Converged {
+		return nil
+	}
+	s, err := screen(d.Sound, d.Causes)
+	if err != nil {
+		return nil
+	}
+	for i, c := range d.Causes {
+		if !lossKind(c.Kind) {
+			continue
+		}
+		x := Smallest{Kind: "pipe", Item: c.Item}
+		if c.Unknown.Kind == "fitting" {
+			x.Kind = "fitting"
+		}
+		if s.info[i] == 0 {
+			x.Words = "no reading depends on it"
+			out = append(out, x)
+			continue
+		}
+		x.Seen = true
+		size := (d.Limit + power80) / math.Sqrt(s.info[i]) // of theta, linear
+		switch {
+		case x.Kind == "fitting":
+			k := math.Exp(d.Model.ExpectedLnK(d.Model.FlatFitting(c.Item)))
+			x.Value, x.Unit = k*(1+size), "K"
+			x.Practical = x.Value < 500
+			x.Words = fmt.Sprintf("only a K above %s would have shown", unit.Significant(x.Value, 2))
+		case c.Unknown.Quantity == "c_value":
+			l := d.Model.LinkIndex(c.Item)
+			x.Value, x.Unit = math.Exp(d.Model.ExpectedLnRough(l))/math.Pow(1+size*1.852, 0.54), "C"
+			x.Practical = x.Value > 30
+			x.Words = fmt.Sprintf("only a C below %s would have shown", unit.Significant(x.Value, 2))
+		default:
+			l := d.Model.LinkIndex(c.Item)
+			rise := roughnessFor(d.Model, d.Sound, c, size)
+			x.Value, x.Unit = 1e3*math.Exp(d.Model.ExpectedLnRough(l)+rise), "mm"
+			x.Practical = x.Value/1e3 < 0.1*d.Model.Survey.Pipes[l].Bore
+			x.Words = fmt.Sprintf("only an equivalent roughness above %s mm would have shown", unit.Significant(x.Value, 2))
+		}
+		out = append(out, x)
+	}
+	return out
+}
+
+// Misreadings lists accepted causes that blame one reading alone, for re-reading.
+func (d *Diagnosis) Misreadings() []survey.Alert {
+	var out []survey.Alert
+	for _, a := range d.Accepted {
+		if a.Kind != misread {
+			continue
+		}
+		h := d.Model.Obs[a.reading].Head
+		out = append(out, survey.Alert{Rule: "one reading stands alone", Subject: h.Tap,
+			Statement: fmt.Sprintf("The %s reading at %s in round %s is off by %s and nothing else explains it.", h.Kind, h.Tap, h.Round, sized(h, d.Final.Theta(a.place))),
+			Evidence:  fmt.Sprintf("leaving it out lowers the sum of squares by %.1f; chance reaches %.1f", a.T, d.Limit*d.Limit),
+			Limit:     "family-wise false-alarm rate of the survey",
+			Action:    "Read it again; until then it does not count.", Sources: h.Sources()})
+	}
+	return out
+}
+
+func sized(h survey.Head, v float64) string {
+	if h.Quantity == survey.VolumeFlow {
+		return unit.Significant(1e3*v, 2) + " L/s"
+	}
+	return unit.Significant(v, 2) + " m"
+}

@@ -1,0 +1,335 @@
+package fault
+
+import (
+	"math"
+	"sort"
+
+	"tapround/calibrate"
+)
+
+// Accepted is a cause that the search took in, with all that was set against it.
+type Accepted struct {
+	Cause
+	// T is the drop of Phi that it brings, all other accepted causes kept.
+	T float64
+	// Probability that this is the cause, over the rivals, "nothing more is wrong"
+	// and "none of these".
+	Probability float64
+	// Class holds the rivals that the readings cannot tell from it, most probable
+	// first; empty: it stands alone.
+	Class []Rival
+	// Others are rivals that fit worse, for the report.
+	Others []Rival
+	// None is the probability of "none of these".
+	None float64
+	// Unknown's place in the final fit.
+	place int
+}
+
+// Rival is another cause in the place of an accepted one.
+type Rival struct {
+	Cause
+	T           float64
+	Probability float64
+	// LnOdds is ln of the accepted cause's posterior odds against it.
+	LnOdds float64
+	Rho    float64
+	Theta  float64
+}
+
+// Diagnosis is the outcome of the search.
+type Diagnosis struct {
+	Model *calibrate.Model
+	// Sound is the fit with everything sound; Final the one with the accepted causes.
+	Sound, Final *calibrate.Fit
+	Accepted     []Accepted
+	// Limit is what |z| of any cause had to pass; Tests how many causes were tested.
+	Limit float64
+	Tests int
+	// Screened holds every cause's z at the sound fit, for the list of hints.
+	Causes  []Cause
+	Z       []float64
+	Caveats []string
+
+	set Settings
+}
+
+// Diagnose searches for what is wrong.
+func Diagnose(m *calibrate.Model, set Settings) (*Diagnosis, error) {
+	sound, err := m.Fit(nil, calibrate.Options{})
+	if err != nil {
+		return nil, err
+	}
+	d := &Diagnosis{Model: m, Sound: sound, Final: sound, Causes: Candidates(m, set), set: set}
+	if !sound.Converged {
+		d.Caveats = append(d.Caveats, "the fit of sound works did not settle ("+sound.Status+"); no cause is named on it")
+		return d, nil
+	}
+	s, err := screen(sound, d.Causes)
+	if err != nil {
+		return nil, err
+	}
+	d.Z = s.z
+	for _, i := range s.info {
+		if i > 0 {
+			d.Tests++
+		}
+	}
+	d.Limit = s.limits(d.Causes, set)
+	chosen, err := d.forward()
+	if err != nil {
+		return nil, err
+	}
+	if chosen, err = d.exchange(chosen); err != nil {
+		return nil, err
+	}
+	if chosen, err = d.backward(chosen); err != nil {
+		return nil, err
+	}
+	return d, d.conclude(chosen)
+}
+
+// trial is one refit with a set of causes.
+type trial struct {
+	fit *calibrate.Fit
+	// evidence is ln p(readings | causes) up to a constant that all trials share:
+	// -Phi/2 - ln det/2, plus ln 2 for each one-sided cause, whose prior lives on
+	// one side only [Kass, Laplace approximation].
+	evidence float64
+	prior    float64 // ln of the causes' prior odds
+	free     float64 // Phi without the causes' own prior rows
+}
+
+func (t *trial) score() float64 { return t.evidence + t.prior }
+
+// try refits with the causes given, started from U of an earlier fit with the
+// last cause at theta. Nil where the works cannot be solved or the last cause comes
+// out on the wrong side.
+func (d *Diagnosis) try(causes []Cause, start []float64, theta float64) *trial {
+	u := append([]float64(nil), start...)
+	unknowns := make([]calibrate.Unknown, len(causes))
+	t := &trial{}
+	for i, c := range causes {
+		unknowns[i] = c.Unknown
+		t.prior += math.Log(c.Prior / (1 - c.Prior))
+	}
+	if len(causes) > 0 && len(u) == len(d.Model.Unknowns)+len(causes)-1 {
+		u = append(u, theta/unknowns[len(causes)-1].SD)
+	}
+	f, err := d.Model.Refit(unknowns, calibrate.Options{Start: u})
+	if err != nil || !f.Converged {
+		return nil
+	}
+	t.fit = f
+	t.evidence = -f.Phi/2 - f.LnDet()/2
+	t.free = f.Phi
+	base := len(d.Model.Unknowns)
+	for i, c := range causes {
+		t.free -= f.U[base+i] * f.U[base+i]
+		if c.Unknown.Sign != 0 {
+			t.evidence += math.Ln2
+			if f.U[base+i]*float64(c.Unknown.Sign) <= 0 {
+				return nil
+			}
+		}
+	}
+	return t
+}
+
+// best finds the cause that, added to those chosen, has the greatest posterior
+// odds, among those whose likelihood ratio passes the limit. ok is false where
+// none does.
+func (d *Diagnosis) best(chosen []Cause, at *trial) (Cause, *trial, bool, error) {
+	list, err := d.ranked(chosen, at, d.Limit*d.Limit*0.6)
+	if err != nil {
+		return Cause{}, nil, false, err
+	}
+	var top Cause
+	var topTrial *trial
+	for _, r := range list {
+		if r.trial == nil || at.free-r.trial.free < d.Limit*d.Limit {
+			continue
+		}
+		if topTrial == nil || r.trial.score() > topTrial.score() {
+			top, topTrial = r.cause, r.trial
+		}
+	}
+	// The odds must favour the cause over nothing more being wrong.
+	if topTrial == nil || topTrial.score() < at.score() {
+		return Cause{}, nil, false, nil
+	}
+	return top, topTrial, true, nil
+}
+
+type ranked struct {
+	cause Cause
+	index int
+	scan  float64 // drop of Phi by the scan
+	trial *trial
+}
+
+// mostRefits bounds how many causes are refitted exactly in one step: the scan
+// follows each cause's own curvature, so that the best stand well inside it.
+const mostRefits = 16
+
+// ranked scans every cause that is not yet chosen and refits the best of those whose
+// scanned drop of Phi passes least.
+func (d *Diagnosis) ranked(chosen []Cause, at *trial, least float64) ([]ranked, error) {
+	s, err := screen(at.fit, d.Causes)
+	if err != nil {
+		return nil, err
+	}
+	// Linearised at the estimate, Phi with a cause at zero is the scan's own
+	// reference, so that drops are compared like with like.
+	zero, err := at.fit.Profiled(nil, nil)
+	if err != nil {
+		return nil, err
+	}
+	var list []ranked
+	thetas := map[int]float64{}
+	for i, c := range d.Causes {
+		if s.info[i] == 0 || has(chosen, c) {
+			continue
+		}
+		if s.passes(i, c.Unknown.Sign) == 0 {
+			continue
+		}
+		drop, theta := s.z[i]*s.z[i], s.size[i]
+		if c.Unknown.Log {
+			drop = 0
+			for _, g := range guess(d.Model, at.fit, c, math.Abs(s.size[i])) {
+				if phi, err := at.fit.Profiled([]calibrate.Unknown{c.Unknown}, []float64{g}); err == nil && zero-phi > drop {
+					drop, theta = zero-phi, g
+				}
+			}
+			drop = math.Max(drop, 0.5*s.z[i]*s.z[i])
+		}
+		if drop >= least {
+			list = append(list, ranked{cause: c, index: i, scan: drop})
+			thetas[i] = theta
+		}
+	}
+	sort.SliceStable(list, func(a, b int) bool { return list[a].scan > list[b].scan })
+	if len(list) > mostRefits {
+		list = list[:mostRefits]
+	}
+	for i := range list {
+		next := append(append([]Cause(nil), chosen...), list[i].cause)
+		list[i].trial = d.try(next, at.fit.U, thetas[list[i].index])
+	}
+	return list, nil
+}
+
+func has(list []Cause, c Cause) bool {
+	for _, x := range list {
+		if x.Kind == c.Kind && x.Item == c.Item && (x.reading == c.reading) {
+			return true
+		}
+	}
+	return false
+}
+
+func (d *Diagnosis) start() *trial { return d.try(nil, d.Sound.U, 0) }
+
+// forward adds the best cause until none passes.
+func (d *Diagnosis) forward() ([]Cause, error) {
+	var chosen []Cause
+	at := d.start()
+	for at != nil && len(chosen) < d.set.MostCauses && at.fit.DoF() > 2 {
+		c, t, ok, err := d.best(chosen, at)
+		if err != nil || !ok {
+			return chosen, err
+		}
+		chosen, at = append(chosen, c), t
+	}
+	return chosen, nil
+}
+
+// fitOf refits a set of causes from the sound estimate.
+func (d *Diagnosis) fitOf(causes []Cause, like *trial) *trial {
+	if like != nil {
+		return d.try(causes, like.fit.U, 0)
+	}
+	t := d.start()
+	for i := range causes {
+		if t == nil {
+			return nil
+		}
+		s, err := screen(t.fit, causes[i:i+1])
+		if err != nil {
+			return nil
+		}
+		theta := s.size[0]
+		if causes[i].Unknown.Log {
+			best := math.Inf(1)
+			for _, g := range guess(d.Model, t.fit, causes[i], math.Abs(s.size[0])) {
+				if phi, err := t.fit.Profiled([]calibrate.Unknown{causes[i].Unknown}, []float64{g}); err == nil && phi < best {
+					best, theta = phi, g
+				}
+			}
+		}
+		t = d.try(causes[:i+1], t.fit.U, theta)
+	}
+	return t
+}
+
+// exchange tries, for each chosen cause, every other in its place, and keeps what
+// raises the posterior; until nothing changes.
+func (d *Diagnosis) exchange(chosen []Cause) ([]Cause, error) {
+	if len(chosen) < 2 {
+		return chosen, nil
+	}
+	at := d.fitOf(chosen, nil)
+	for pass := 0; pass < 3 && at != nil; pass++ {
+		changed := false
+		for i := range chosen {
+			rest := without(chosen, i)
+			base := d.fitOf(rest, nil)
+			if base == nil {
+				continue
+			}
+			c, t, ok, err := d.best(rest, base)
+			if err != nil {
+				return nil, err
+			}
+			if ok && t.score() > at.score()+0.5 && !same(c, chosen[i]) {
+				chosen, at, changed = append(rest, c), t, true
+				break
+			}
+		}
+		if !changed {
+			break
+		}
+	}
+	return chosen, nil
+}
+
+// backward drops causes that the others have made needless.
+func (d *Diagnosis) backward(chosen []Cause) ([]Cause, error) {
+	for len(chosen) > 0 {
+		full := d.fitOf(chosen, nil)
+		if full == nil {
+			return chosen, nil
+		}
+		worst, at := math.Inf(1), -1
+		for i := range chosen {
+			if t := d.fitOf(without(chosen, i), nil); t != nil && t.free-full.free < worst {
+				worst, at = t.free-full.free, i
+			}
+		}
+		if at < 0 || worst >= d.Limit*d.Limit {
+			return chosen, nil
+		}
+		chosen = without(chosen, at)
+	}
+	return chosen, nil
+}
+
+func without(list []Cause, i int) []Cause {
+	out := append([]Cause(nil), list[:i]...)
+	return append(out, list[i+1:]...)
+}
+
+func same(a, b Cause) bool {
+	return a.Kind == b.Kind && a.Item == b.Item && a.Variant == b.Variant && a.reading == b.reading
+}
