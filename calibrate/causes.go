@@ -98,7 +98,7 @@ func (m *Model) ReservoirOf(point int, s Spreads) Unknown {
 func (m *Model) Unrecorded(point int, rounds []int, s Spreads) Unknown {
 	u := Unknown{Kind: "draw-off", Item: m.Survey.Points[point].Name, Quantity: "flow", SD: s.Unrecorded * m.flowScale(), Sign: 1}
 	for _, r := range rounds {
-		u.Targets = append(u.Targets, Target{class: onDrawOff, index: point, round: r, Weight: 1})
+		u.Targets = append(u.Targets, Target{class: onLeak, index: point, round: r, Weight: 1})
 	}
 	return u
 }

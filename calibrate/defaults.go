@@ -12,6 +12,9 @@ type Priors struct {
 	LnGroup       float64 // SD of a group's common ln factor where expected values are as-new
 	HeadFactor    float64 // SD of a machine's head factor
 	ProfileFactor float64 // SD of u/V at a pitot tap, fraction
+	// OutletCoefficient is the SD of the coefficient of an outlet whose jet is
+	// measured, fraction: 3 % unless checked on site.
+	OutletCoefficient float64
 	// FrictionLaw and LnBore are not unknowns: they widen the interval of a
 	// roughness that is reported (as lost bore and rough wall are one curve).
 	FrictionLaw float64 // SD of ln f
@@ -29,7 +32,7 @@ type Priors struct {
 func DefaultPriors() Priors {
 	return Priors{
 		LnRoughness: math.Log(1.5), LnC: math.Log(1.07), LnK: math.Log(1.3), LnKKind: 0.15,
-		LnGroup: 0.5, HeadFactor: 0.015, ProfileFactor: 0.03,
+		LnGroup: 0.5, HeadFactor: 0.015, ProfileFactor: 0.03, OutletCoefficient: 0.03,
 		FrictionLaw: 0.05, LnBore: 0.01, OpenLevel: 50,
 	}
 }

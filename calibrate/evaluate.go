@@ -20,8 +20,9 @@ type Workspace struct {
 	gain    []float64
 	level   []float64 // by tap, m
 	profile []float64
-	baro    []float64 // by round
-	own     []float64 // by observation: onReading
+	baro    []float64   // by round
+	own     []float64   // by observation: onReading
+	leaks   [][]float64 // by round and point: onLeak, which no jet sees
 	grad    *hydraulic.Gradient
 	sum     *hydraulic.Gradient
 }
@@ -39,6 +40,7 @@ func (m *Model) NewWorkspace() *Workspace {
 		c.DrawOff = append([]float64(nil), c.DrawOff...)
 		w.conds = append(w.conds, c)
 		w.solvers = append(w.solvers, m.System.NewSolver())
+		w.leaks = append(w.leaks, make([]float64, len(m.Survey.Points)))
 	}
 	w.reset()
 	return w
@@ -52,6 +54,7 @@ func (w *Workspace) reset() {
 	for i := range w.conds {
 		copy(w.conds[i].Head, w.m.Rounds[i].Conditions.Head)
 		copy(w.conds[i].DrawOff, w.m.Rounds[i].Conditions.DrawOff)
+		clear(w.leaks[i])
 	}
 	for _, s := range [][]float64{w.offset, w.gain, w.level, w.profile, w.baro, w.own} {
 		clear(s)
@@ -82,6 +85,11 @@ func (w *Workspace) move(t Target, by float64) {
 		w.params.HeadFactor[t.index] += by
 	case onDrawOff:
 		w.eachRound(t.round, func(r int) { w.conds[r].DrawOff[t.index] += by })
+	case onLeak:
+		w.eachRound(t.round, func(r int) {
+			w.conds[r].DrawOff[t.index] += by
+			w.leaks[r][t.index] += by
+		})
 	case onLevel:
 		w.eachRound(t.round, func(r int) { w.conds[r].Head[t.index] += by })
 	case onOffset:
@@ -137,13 +145,16 @@ func (w *Workspace) flowing(round int) bool {
 func (w *Workspace) readParts(o Observation, e float64) float64 {
 	sum := 0.0
 	for _, p := range o.parts {
-		v := p.weight * w.solvers[o.Round].Read(p.probe)
-		if p.profiled {
-			v *= (1 + e) * (1 + e)
-		}
-		sum += v
+		sum += p.weight * p.factor(e) * w.readPart(o.Round, p)
 	}
 	return sum
+}
+
+func (w *Workspace) readPart(round int, p part) float64 {
+	if p.drawn {
+		return w.conds[round].DrawOff[p.point] - w.leaks[round][p.point] - p.stated
+	}
+	return w.solvers[round].Read(p.probe)
 }
 
 // predict gives what observation i should read with all shared errors.
@@ -188,15 +199,17 @@ func (w *Workspace) row(i int, unknowns []Unknown, dst []float64) error {
 func (w *Workspace) gradient(o Observation) error {
 	w.sum.Zero()
 	for _, p := range o.parts {
+		if p.drawn {
+			continue
+		}
 		if err := w.solvers[o.Round].Gradient(p.probe, w.grad); err != nil {
 			return err
 		}
-		f := p.weight
-		if p.profiled {
-			e := w.profile[o.tap]
-			f *= (1 + e) * (1 + e)
+		e := 0.0
+		if p.power > 0 && o.tap >= 0 {
+			e = w.profile[o.tap]
 		}
-		w.sum.AddScaled(f, w.grad)
+		w.sum.AddScaled(p.weight*p.factor(e), w.grad)
 	}
 	return nil
 }
@@ -212,10 +225,15 @@ func (w *Workspace) along(t Target, i int, o Observation, gain float64) float64 
 		return gain * w.sum.LnK[t.index]
 	case onMachine:
 		return gain * w.sum.HeadFactor[t.index]
-	case onDrawOff:
-		if here {
-			return gain * w.sum.DrawOff[t.index]
+	case onDrawOff, onLeak:
+		if !here {
+			return 0
 		}
+		d := w.sum.DrawOff[t.index]
+		if p := o.parts[0]; p.drawn && p.point == t.index && t.class == onDrawOff {
+			d += p.weight * p.factor(w.profile[o.tap])
+		}
+		return gain * d
 	case onLevel:
 		if here {
 			return gain * w.sum.FixedHead[t.index]
@@ -241,8 +259,9 @@ func (w *Workspace) along(t Target, i int, o Observation, gain float64) float64 
 		if t.index == o.tap {
 			d := 0.0
 			for _, p := range o.parts {
-				if p.profiled {
-					d += p.weight * w.solvers[o.Round].Read(p.probe) * 2 * (1 + w.profile[o.tap])
+				if p.power > 0 {
+					// d (1+e)^n / de = n (1+e)^(n-1)
+					d += p.weight * w.readPart(o.Round, p) * float64(p.power) * part{power: p.power - 1}.factor(w.profile[o.tap])
 				}
 			}
 			return gain * d

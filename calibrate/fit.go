@@ -56,6 +56,10 @@ type Options struct {
 // plausible size, and keeps the problem determined.
 const freeCause = 30
 
+// negligible is a drop of Phi that no longer matters: limits stand between 4 and 15,
+// and with heads solved to 1e-10 m rounding stays below it.
+const negligible = 1e-5
+
 // logReach bounds how far ln roughness and ln K may run: e^9 is a factor of 8,000,
 // beyond any pipe or valve that still passes water.
 const logReach = 9
@@ -89,7 +93,7 @@ func (m *Model) Fit(causes []Unknown, o Options) (*Fit, error) {
 	for c, x := range f.Unknowns {
 		p.Lower[c], p.Upper[c] = x.bounds()
 	}
-	res, err := lsq.Solve(p, f.U, lsq.Settings{})
+	res, err := lsq.Solve(p, f.U, lsq.Settings{Negligible: negligible})
 	if err != nil {
 		return nil, err
 	}

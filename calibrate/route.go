@@ -42,16 +42,7 @@ func (m *Model) pointNear(name string) (int, error) {
 		return p, nil
 	}
 	if t, ok := m.taps[name]; ok {
-		tap := m.Survey.Taps[t]
-		if tap.Point != "" {
-			return m.points[tap.Point], nil
-		}
-		l := m.links[tap.Pipe]
-		from, to := m.endsOf(l)
-		if tap.At <= m.lengthOf(l)/2 {
-			return from, nil
-		}
-		return to, nil
+		return m.pointOf(m.Survey.Taps[t].Name), nil
 	}
 	return 0, fmt.Errorf("%q is neither a point nor a tap of this survey; its points are %s", name, m.someNames())
 }

@@ -7,13 +7,14 @@ const (
 	onRoughness class = iota // ln k or ln C of a link
 	onLoss                   // ln K of a fitting (flat index)
 	onMachine                // head factor of a link
-	onDrawOff                // draw-off of a point, m3/s
+	onDrawOff                // draw-off of a point that the tables know of, m3/s
+	onLeak                   // flow out of a point that nobody wrote down, m3/s
 	onLevel                  // fixed head of a point, m
 	onOffset                 // offset of a gauge, SI of the gauge
 	onGain                   // gain of a gauge, fraction
 	onTapLevel               // level error of a tap, m
 	onBarometer              // barometer error of a round, in the unit of Value
-	onProfile                // profile factor of a tap, fraction
+	onProfile                // profile factor of a pitot tap, or outlet coefficient of a jet, fraction
 	onReading                // error of one reading alone, unit of its Value
 )
 

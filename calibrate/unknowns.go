@@ -159,8 +159,9 @@ func (m *Model) flowScale() float64 {
 func (m *Model) instrumentUnknowns(heads []survey.Head) {
 	s := m.Survey
 	offset, gain := make([]float64, len(s.Gauges)), make([]float64, len(s.Gauges))
-	level, profile := make([]float64, len(s.Taps)), make([]bool, len(s.Taps))
+	level, profile := make([]float64, len(s.Taps)), make([]float64, len(s.Taps))
 	barometer := make([]float64, len(s.Rounds))
+	jets := make([]bool, len(s.Taps))
 	for _, h := range heads {
 		if g, ok := m.gauges[h.Gauge]; ok && h.PerGauge != 0 {
 			offset[g], gain[g] = math.Max(offset[g], h.GaugeSD), math.Max(gain[g], h.GainSD)
@@ -172,7 +173,11 @@ func (m *Model) instrumentUnknowns(heads []survey.Head) {
 			level[m.taps[h.OtherTap]] = h.OtherTapSD
 		}
 		if h.Quantity == survey.LocalVelocity || h.Quantity == survey.LocalTotalHead {
-			profile[m.taps[h.Tap]] = true
+			profile[m.taps[h.Tap]] = m.Priors.ProfileFactor
+		}
+		if h.Quantity == survey.OutletFlow {
+			profile[m.taps[h.Tap]] = m.Priors.OutletCoefficient
+			jets[m.taps[h.Tap]] = true
 		}
 		barometer[m.rounds[h.Round]] = math.Max(barometer[m.rounds[h.Round]], h.BarometerSD)
 	}
@@ -189,8 +194,12 @@ func (m *Model) instrumentUnknowns(heads []survey.Head) {
 		if level[i] > 0 {
 			m.add(Unknown{Kind: "tap", Item: t.Name, Quantity: "level_error", SD: level[i], Targets: one(onTapLevel, i, everyRound)})
 		}
-		if profile[i] && m.Priors.ProfileFactor > 0 {
-			m.add(Unknown{Kind: "tap", Item: t.Name, Quantity: "profile_factor", SD: m.Priors.ProfileFactor, Targets: one(onProfile, i, everyRound)})
+		if profile[i] > 0 {
+			quantity := "profile_factor"
+			if jets[i] {
+				quantity = "outlet_coefficient"
+			}
+			m.add(Unknown{Kind: "tap", Item: t.Name, Quantity: quantity, SD: profile[i], Targets: one(onProfile, i, everyRound)})
 		}
 	}
 	for i, r := range s.Rounds {

@@ -15,8 +15,8 @@
 //
 // # References
 //
-//	[More]      J. J. More, The Levenberg-Marquardt algorithm: implementation and
-//	            theory, Lecture Notes in Mathematics 630 (1978) 105-116
+//	[More]      J. J. More, The Levenberg-Marquardt algorithm, in G. A. Watson (ed.),
+//	            Numerical Analysis, Dundee 1977, Springer (1978) 105-116
 //	[CGT]       A. R. Conn, N. I. M. Gould, Ph. L. Toint, Trust-Region Methods (2000)
 //	[Golub]     G. H. Golub, C. F. Van Loan, Matrix Computations, 4th ed. (2013)
 //	[Bates]     D. M. Bates, D. G. Watts, Technometrics 23 (1981) 179-183

@@ -145,17 +145,20 @@ func (it *iteration) iterate() Status {
 	it.linearise()
 	radius := it.set.Radius
 	if radius <= 0 {
-		radius = l.length(l.x)
+		radius = math.Max(l.length(l.x), math.Sqrt(it.sum))
 	}
 	if radius == 0 {
 		radius = math.Sqrt(it.sum)
 	}
-	lambda := 0.0
+	lambda, best, idle := 0.0, math.Inf(1), 0
 	for {
 		settled, offset := it.settled()
 		if settled {
 			it.polish()
 			return Converged
+		}
+		if idle++; offset < 0.9*best {
+			best, idle = offset, 0
 		}
 		for moved := false; !moved; {
 			if it.steps++; it.steps > it.set.MaxIterations {
@@ -164,7 +167,9 @@ func (it *iteration) iterate() Status {
 			var promise float64
 			promise, lambda = l.step(radius, lambda)
 			length := l.length(l.p)
-			if promise <= noise*it.sum || length <= epsilon*l.length(l.x) {
+			// Below its rounding the sum of squares cannot judge a step; it is taken as long
+			// as the offset still falls.
+			if length <= epsilon*l.length(l.x) || promise <= noise*it.sum && idle > 2 {
 				return it.stopped(offset)
 			}
 			l.trial(it.xt)

@@ -7,6 +7,7 @@
 //	                  the gauge's height above the tap, an air-filled one nothing
 //	local total head  the same of the impact pressure at a pitot opening
 //	velocity head     dp/(rho g)
+//	jet               Q = C A sqrt(2 p/rho), drawn off at the tap's point
 //	difference        dp/(rho g) with water-filled lines, for the levels cancel; with
 //	                  air-filled ones z_tap - z_other is added
 package head
@@ -75,9 +76,8 @@ func FromCorrected(s *survey.Survey, cs []survey.Corrected) ([]survey.Head, surv
 	var order []key
 	groups := map[key][]survey.Corrected{}
 	for _, r := range cs {
-		if r.Kind == survey.Jet {
-			problems = append(problems, survey.Problem{Source: r.Source, Severity: survey.SetAside, Column: "kind", Text: "jet",
-				Reason: "jets are not used by this version", Remedy: "give the flow as a draw-off in conditions.csv"})
+		if p, bad := c.jetProblem(r); bad {
+			problems = append(problems, p)
 			continue
 		}
 		k := key{r.Round, r.Tap, r.OtherTap, r.Gauge, r.Kind, r.GaugeHeight, r.Depth}
@@ -128,11 +128,38 @@ func (c *converter) head(rs []survey.Corrected) survey.Head {
 	case survey.FlowRate:
 		h.Quantity = survey.VolumeFlow
 		h.Value, h.Own, h.PerGauge = mean, own, 1
+	case survey.Jet:
+		// p = rho/2 (Q/(C A))^2, so dQ/dp = Q/(2p).
+		p := c.atTap(r, mean)
+		q := tap.OutletCoefficient.V * math.Pi / 4 * tap.OutletBore.V * tap.OutletBore.V * math.Sqrt(2*p/h.Density)
+		h.Quantity = survey.OutletFlow
+		h.Pressure = survey.Some(p)
+		h.Value, h.Own, h.PerGauge = q, own*q/(2*p), q/(2*p)
 	case survey.WaterLevel:
 		h.Quantity = survey.FreeWaterSurface
 		h.Value, h.Own, h.PerGauge = mean, own, 1
 	}
 	return h
+}
+
+// jetProblem: a jet needs the outlet's bore and coefficient, and a pressure.
+func (c *converter) jetProblem(r survey.Corrected) (survey.Problem, bool) {
+	if r.Kind != survey.Jet {
+		return survey.Problem{}, false
+	}
+	t := c.taps[r.Tap]
+	p := survey.Problem{Source: r.Source, Severity: survey.SetAside, Column: "reading", Text: r.Written}
+	switch {
+	case !t.OutletBore.OK || !t.OutletCoefficient.OK:
+		p.Reason = "the jet's flow needs the bore and the coefficient of the outlet of tap " + t.Name
+		p.Remedy = "fill outlet_bore and outlet_coefficient in taps.csv"
+	case c.atTap(r, r.Pressure) <= 0:
+		p.Reason = "a jet has a pressure above zero"
+		p.Remedy = "read it again, with the pitot in the middle of the jet"
+	default:
+		return survey.Problem{}, false
+	}
+	return p, true
 }
 
 // atTap brings a pressure from the gauge's centre to the tap's level.
