@@ -93,30 +93,40 @@ func (r *Result) judge() {
 			f.a[c*rows+i] = row[k]
 		}
 	}
-	norm := 0.0
-	c := make([]float64, rows)
-	copy(c, r.R)
-	gradient := 0.0
 	for i := range r.free {
 		col := f.column(i)
 		r.scale[i] = blas64.Nrm2(vector(col))
-		norm = math.Hypot(norm, r.scale[i])
-		gradient = math.Hypot(gradient, blas64.Dot(vector(col), vector(c)))
 		if r.scale[i] > 0 {
 			blas64.Scal(1/r.scale[i], vector(col))
 		}
 	}
 	f.decompose()
 	r.factor = f
-	if size := blas64.Nrm2(vector(c)); size > 0 && norm > 0 {
-		r.Gradient = gradient / norm / size
-		f.transform(c)
-		r.Offset = blas64.Nrm2(vector(c[:n])) / size
-	}
 	r.Rank, r.Undetermined, r.Condition = f.rank()
 	for i, c := range r.Undetermined {
 		r.Undetermined[i] = r.free[c]
 	}
+	r.fitness()
+}
+
+// fitness fills in the gradient and the offset of the residuals.
+func (r *Result) fitness() {
+	r.Gradient, r.Offset = 0, 0
+	size, norm := blas64.Nrm2(vector(r.R)), blas64.Nrm2(vector(r.scale))
+	if size == 0 || norm == 0 {
+		return
+	}
+	c := make([]float64, r.factor.m)
+	copy(c, r.R)
+	r.factor.transform(c)
+	n := len(r.free)
+	r.Offset = blas64.Nrm2(vector(c[:n])) / size
+	g := 0.0
+	for k := range n {
+		s := r.factor.diag[k]*c[k] + blas64.Dot(vector(r.factor.column(k)[:k]), vector(c[:k]))
+		g = math.Hypot(g, s*r.scale[k])
+	}
+	r.Gradient = g / norm / size
 }
 
 // triangle copies R into a dense upper triangle.

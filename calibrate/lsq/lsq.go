@@ -22,6 +22,7 @@
 //	[Bates]     D. M. Bates, D. G. Watts, Technometrics 23 (1981) 179-183
 //	[Kanzow]    C. Kanzow, N. Yamashita, M. Fukushima, J. Comput. Appl. Math. 172
 //	            (2004) 375-397
+//	[Venzon]    D. J. Venzon, S. H. Moolgavkar, Appl. Stat. 37 (1988) 87-94
 package lsq
 
 import (
@@ -44,7 +45,7 @@ type Problem struct {
 
 // Settings of Solve. A field left zero has the default given with it.
 type Settings struct {
-	// MaxIterations counts trial steps; default 500.
+	// MaxIterations counts trial steps; default 1000.
 	MaxIterations int
 	// StepTolerance: the Gauss-Newton step, in scaled unknowns, relative to their
 	// size; default 1e-8.
@@ -54,7 +55,7 @@ type Settings struct {
 	// [Bates]); default 1e-8.
 	GradientTolerance float64
 	// Radius is the first bound on a step, in scaled unknowns D p, where D holds the
-	// column norms of J. Default: |D start|, or |r(start)| where start is zero.
+	// column norms of J. Default: the larger of |D start| and |r(start)|.
 	Radius float64
 	// Negligible is a decrease of the sum of squares that does not matter. Where
 	// rounding in the residuals keeps the tolerances from being met, the iteration
@@ -66,7 +67,7 @@ type Settings struct {
 // withDefaults fills in the documented defaults, field by field.
 func (s Settings) withDefaults() Settings {
 	if s.MaxIterations == 0 {
-		s.MaxIterations = 500
+		s.MaxIterations = 1000
 	}
 	for _, d := range []struct {
 		v *float64

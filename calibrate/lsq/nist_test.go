@@ -181,3 +181,68 @@ func TestNISTDerivatives(t *testing.T) {
 		}
 	}
 }
+
+// TestNISTLinear holds Linear to the certified coefficients and deviations of the
+// linear sets.
+func TestNISTLinear(t *testing.T) {
+	// Digits asked for: what QR of scaled columns keeps of each set's 15, by its
+	// condition (ESTIMATION figures computed for this project); deviations keep more.
+	need := map[string][2]float64{
+		"Norris": {11, 12}, "Pontius": {11, 12}, "NoInt1": {13, 13}, "NoInt2": {13, 13},
+		"Filip": {7, 8}, "Longley": {10, 11}, "Wampler1": {9, 0}, "Wampler2": {9, 0},
+		"Wampler3": {9, 11}, "Wampler4": {7, 11}, "Wampler5": {5, 11},
+	}
+	var file struct{ Datasets []nistSet }
+	readChecks(t, "nist_linear.json", &file)
+	if len(file.Datasets) != len(need) {
+		t.Fatalf("%d sets, want %d", len(file.Datasets), len(need))
+	}
+	for _, s := range file.Datasets {
+		a, y := s.design()
+		res, err := lsq.Linear(a, y, nil)
+		if err != nil || !res.Status.OK() {
+			t.Fatalf("%s: %v, %v", s.Name, err, res.Status)
+		}
+		sd, err := res.SD()
+		if err != nil {
+			t.Fatal(err)
+		}
+		m, n := a.Dims()
+		s0 := math.Sqrt(res.SumSquares / float64(m-n))
+		worst, worstSD := 16.0, 16.0
+		for k, v := range s.Certified {
+			worst = math.Min(worst, digits(res.X[k], number(t, v)))
+			worstSD = math.Min(worstSD, digits(sd[k]*s0, number(t, s.CertifiedSD[k])))
+		}
+		t.Logf("%s: digits: values %.1f, deviations %.1f, condition %.1e", s.Name, worst, worstSD, res.Condition)
+		if worst < need[s.Name][0] || worstSD < need[s.Name][1] {
+			t.Errorf("%s: digits: values %.2f, deviations %.2f, want %v", s.Name, worst, worstSD, need[s.Name])
+		}
+	}
+}
+
+// design is the matrix of the set: powers of x, or the columns x1, x2 and on.
+func (s nistSet) design() (*mat.Dense, []float64) {
+	y := s.Data["y"]
+	n := len(s.Certified)
+	a := mat.NewDense(len(y), n, nil)
+	for i := range y {
+		for k := range n {
+			power := k + s.FirstIndex
+			x := s.Data["x"]
+			switch {
+			case power == 0:
+				a.Set(i, k, 1)
+			case x == nil:
+				a.Set(i, k, s.Data["x"+strconv.Itoa(power)][i])
+			default:
+				v := 1.0
+				for range power {
+					v *= x[i]
+				}
+				a.Set(i, k, v)
+			}
+		}
+	}
+	return a, y
+}

@@ -147,9 +147,6 @@ func (it *iteration) iterate() Status {
 	if radius <= 0 {
 		radius = math.Max(l.length(l.x), math.Sqrt(it.sum))
 	}
-	if radius == 0 {
-		radius = math.Sqrt(it.sum)
-	}
 	lambda, best, idle := 0.0, math.Inf(1), 0
 	for {
 		settled, offset := it.settled()

@@ -1,0 +1,165 @@
+package fault
+
+import (
+	"flag"
+	"fmt"
+	"math"
+	"math/rand/v2"
+	"runtime"
+	"sync"
+	"testing"
+
+	"tapround/survey"
+)
+
+var (
+	study     = flag.Int("study", 0, "surveys of each kind in TestStudy; 0: a short run")
+	studySeed = flag.Uint64("study.seed", 7, "seed of TestStudy")
+)
+
+// outcome of one survey of the study.
+type outcome struct {
+	kind                          survey.FindingKind
+	ratio                         float64
+	failed                        bool
+	any, provenWrong, right, open bool
+	named                         string
+	inside, intervals             int // 95 % intervals of sound unknowns that hold the prior draw's truth
+}
+
+// TestStudy draws sound and faulty surveys, runs the product and counts. The plain run
+// is short and holds loose limits, so that it fails when something breaks; the long run
+// (go test ./calibrate/fault -run Study -study 300 -v) is what DEVELOPERS.md reports.
+func TestStudy(t *testing.T) {
+	n := *study
+	if n == 0 {
+		n = 12
+	}
+	kinds := []survey.FindingKind{"", survey.FouledPipe, survey.PartClosedValve, survey.BlockedFitting, survey.GaugeOff, survey.LevelWrong, survey.UnrecordedFlow}
+	type job struct {
+		kind survey.FindingKind
+		i    int
+	}
+	jobs := make(chan job)
+	results := make(chan outcome)
+	var wg sync.WaitGroup
+	for range runtime.GOMAXPROCS(0) {
+		wg.Add(1)
+		go func() {
+			defer wg.Done()
+			for j := range jobs {
+				results <- runOne(j.kind, j.i)
+			}
+		}()
+	}
+	go func() {
+		for _, k := range kinds {
+			count := n
+			if k == "" {
+				count = 3 * n // the false-alarm rate is the hardest to count
+			}
+			for i := 0; i < count; i++ {
+				jobs <- job{k, i}
+			}
+		}
+		close(jobs)
+		wg.Wait()
+		close(results)
+	}()
+	byKind := map[survey.FindingKind][]outcome{}
+	for o := range results {
+		byKind[o.kind] = append(byKind[o.kind], o)
+	}
+	sound, alarms, failed := 0, 0, 0
+	seen, right, wrong := 0, 0, 0
+	for _, k := range kinds {
+		kSeen, kRight, kOpen, kWrong := 0, 0, 0, 0
+		for _, o := range byKind[k] {
+			if o.failed {
+				failed++
+				continue
+			}
+			if k == "" {
+				sound++
+				if o.any {
+					alarms++
+				}
+				continue
+			}
+			if o.provenWrong {
+				kWrong++
+			}
+			if o.ratio > 4 {
+				kSeen++
+				if o.right {
+					kRight++
+				} else if o.open {
+					kOpen++
+				}
+			}
+		}
+		if k != "" {
+			t.Logf("%-18s over 4 u: %d, named %d, in an honest class %d; wrong cause proven in %d of %d", k, kSeen, kRight, kOpen, kWrong, len(byKind[k]))
+			seen, right, wrong = seen+kSeen, right+kRight+kOpen, wrong+kWrong
+		}
+	}
+	rate := float64(alarms) / float64(sound)
+	t.Logf("sound: %d surveys, %d with a proven or likely finding (%.1f %%); found over 4 u: %d of %d (%.0f %%); wrong cause proven: %d; not computed: %d",
+		sound, alarms, 100*rate, right, seen, 100*float64(right)/float64(seen), wrong, failed)
+	// Binomial limits at n = 36 sound surveys: 5 % nominal gives 6 or more once in
+	// a hundred runs.
+	if rate > 0.05+3*math.Sqrt(0.05*0.95/float64(sound)) {
+		t.Errorf("false alarms in %d of %d sound surveys", alarms, sound)
+	}
+	if float64(right) < 0.75*float64(seen) {
+		t.Errorf("found only %d of %d faults of over four standard uncertainties", right, seen)
+	}
+	if failed > 0 {
+		t.Errorf("%d surveys could not be computed", failed)
+	}
+}
+
+func runOne(kind survey.FindingKind, i int) outcome {
+	o := outcome{kind: kind}
+	var s *synth
+	for try := uint64(0); s == nil; try++ {
+		rng := rand.New(rand.NewPCG(*studySeed+1000*try, uint64(i)*131+uint64(len(kind))))
+		s = newSynth(rng, shapes[i%len(shapes)], kind)
+		if try > 200 {
+			o.failed = true
+			return o
+		}
+	}
+	d, err := diagnose(s.recorded)
+	if err != nil || !d.Final.Converged {
+		o.failed = true
+		return o
+	}
+	if s.fault != nil {
+		o.ratio = s.fault.ratio
+	}
+	for _, f := range d.Findings() {
+		if f.Grade == survey.Hint || f.Kind == survey.NotCovered || f.Kind == survey.BelowAtmosphere {
+			continue
+		}
+		o.any = true
+		o.named += fmt.Sprintf(" %s %s:%s", f.Grade, f.Kind, f.Item)
+		if s.fault == nil {
+			continue
+		}
+		hit := f.Kind == s.fault.kind && f.Item == s.fault.item
+		inClass := false
+		for _, c := range f.CannotBeToldFrom {
+			inClass = inClass || c == string(s.fault.kind)+":"+s.fault.item
+		}
+		switch {
+		case hit:
+			o.right = true
+		case inClass:
+			o.open = true
+		case f.Grade == survey.Proven:
+			o.provenWrong = true
+		}
+	}
+	return o
+}
