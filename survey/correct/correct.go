@@ -1,8 +1,30 @@
 // Package correct applies what is known about a gauge to its readings: bench check,
-// barometer, and the two parts of its uncertainty. The reading as written stays inside.
+// barometer, and the two parts of its standard uncertainty. The reading as written
+// stays inside, untouched.
 //
-// References: JCGM 100:2008, 4.3.7 (a limit a becomes a standard uncertainty a/sqrt 3)
-// and F.2.2.1 (a resolution d gives d/sqrt 12).
+// # What a reading is uncertain by
+//
+// Its own part, new in each reading: the rectangle of the smallest step d, d/sqrt 12
+// [JCGM100 F.2.2.1]; reading a moving pointer or a flickering digit, 0.3 d (common
+// practice); and, where the crew wrote a range, half of it over sqrt 3.
+//
+// The part shared by all readings of one gauge: the class error a, per cent of span,
+// as a rectangle, a/sqrt 3 [JCGM100 4.3.7]; after a bench check a quarter of it. It is
+// one unknown offset for the whole survey, never noise. The span of a compound gauge
+// is the whole of it: 6 bar for -1 to +5 bar.
+//
+// The part shared by the absolute gauges of one round without a barometer: the
+// weather.
+//
+// Not in these: the effect of the air's temperature on the gauge, which for a Bourdon
+// tube may reach 0.04 % of full scale a kelvin away from 20 C [EN837 9.2, by way of a
+// maker's manual], and the wider error of the outer quarters of the scale that some
+// grades allow; state the larger figure as the gauge's accuracy where they matter.
+//
+// References:
+//
+//	[JCGM100] JCGM 100:2008, Guide to the expression of uncertainty in measurement.
+//	[EN837]   EN 837-1:1996, Pressure gauges, Bourdon tube pressure gauges.
 package correct
 
 import (
@@ -13,145 +35,152 @@ import (
 	"tapround/survey/water"
 )
 
-const (
-	// readerShare is the scatter of reading a moving pointer or a flickering digit, in
-	// smallest steps (common practice).
-	readerShare = 0.3
-	// benchShare is what a bench check leaves of the class error.
-	benchShare = 0.25
-	// noClass is the class assumed for a gauge that states none, per cent of span: the
-	// ordinary site gauge (common practice).
-	noClass = 0.016
-	// weatherSD is the standard uncertainty of the atmosphere at a site where a round
-	// states no barometer, Pa: day-to-day weather (common practice).
-	weatherSD = 800.0
-)
+// weatherSD is the standard uncertainty of the standard atmosphere as the real one at a
+// site, Pa. Day-to-day pressure at one place scatters by some 0.3 kPa in the tropics
+// and 1 kPa at middle latitudes (one standard deviation); 0.8 kPa, 0.08 m of water, is
+// taken everywhere (common practice).
+const weatherSD = 800.0
 
-// OwnSD is the standard uncertainty that one reading has of its own, in SI of the
-// gauge: the step's rectangle and the reader's scatter.
-func OwnSD(g survey.Gauge) (step, reader float64) {
-	d := g.Resolution.V
-	if !g.Resolution.OK {
-		d = 0.2 * class(g) * g.Span()
-	}
-	return d / math.Sqrt(12), readerShare * d
-}
-
-func class(g survey.Gauge) float64 { return g.Accuracy.Or(noClass) }
-
-// Readings corrects every reading that is in use, in their order.
+// Readings corrects every reading that is in use, in the order of the survey: one
+// Corrected for each. Pressure is the corrected value in SI of the reading's kind: Pa
+// above atmosphere for a pressure, m3/s for a flow, m for a level.
+//
+// A reading that cannot be used is marked in s as set aside and comes back as a
+// Problem: its pipe is shut in that round, its gauge is not known or cannot measure
+// such a thing, its round or tap is not in the tables. Readings already set aside are
+// passed over.
 func Readings(s *survey.Survey) ([]survey.Corrected, survey.Problems) {
-	gauges := map[string]survey.Gauge{}
-	for _, g := range s.Gauges {
-		gauges[g.Name] = g
-	}
-	rounds := map[string]survey.Round{}
-	for _, r := range s.Rounds {
-		rounds[r.Name] = r
-	}
-	shut := shutPipes(s)
-	taps := map[string]survey.Tap{}
-	for _, t := range s.Taps {
-		taps[t.Name] = t
-	}
+	b := newBench(s)
 	var out []survey.Corrected
 	var problems survey.Problems
-	for i := range s.Readings {
-		r := &s.Readings[i]
+	for i, r := range s.Readings {
 		if r.SetAside != "" {
 			continue
 		}
-		if p := taps[r.Tap].Pipe; p != "" && shut[r.Round][p] {
-			r.SetAside = fmt.Sprintf("pipe %s is shut in round %s", p, r.Round)
-			problems = append(problems, survey.Problem{Source: r.Source, Severity: survey.SetAside, Column: "tap", Text: r.Tap,
-				Reason: r.SetAside, Remedy: "nothing flows there; correct conditions.csv if it was open"})
+		if p, bad := b.unusable(r); bad {
+			problems = append(problems, s.PutAside(i, p))
 			continue
 		}
-		g, ok := gauges[r.Gauge]
+		g, p, ok := b.gauges.For(r)
 		if !ok {
-			r.SetAside = "no gauge named"
-			problems = append(problems, survey.Problem{Source: r.Source, Severity: survey.SetAside, Column: "gauge", Text: r.Gauge,
-				Reason: "the reading names no gauge, so nothing is known of its error", Remedy: "write the gauge's number, or add the gauge to gauges.csv"})
+			problems = append(problems, s.PutAside(i, p))
 			continue
 		}
-		out = append(out, one(s, *r, g, rounds[r.Round]))
+		c, p, ok := b.correct(r, g)
+		if !ok {
+			problems = append(problems, s.PutAside(i, p))
+			continue
+		}
+		out = append(out, c)
 	}
 	return out, problems
 }
 
-func shutPipes(s *survey.Survey) map[string]map[string]bool {
-	out := map[string]map[string]bool{}
-	for _, r := range s.Rounds {
-		out[r.Name] = s.InForce(r.Name).Shut
-	}
-	return out
+// bench is the survey looked up by name.
+type bench struct {
+	siteLevel float64
+	gauges    Gauges
+	rounds    map[string]survey.Round
+	taps      map[string]survey.Tap
+	shut      map[string]map[string]bool // by round, then pipe
 }
 
-func one(s *survey.Survey, r survey.Reading, g survey.Gauge, round survey.Round) survey.Corrected {
+func newBench(s *survey.Survey) *bench {
+	b := &bench{siteLevel: s.Info.SiteLevel, gauges: GaugesOf(s), rounds: map[string]survey.Round{},
+		taps: map[string]survey.Tap{}, shut: map[string]map[string]bool{}}
+	for _, r := range s.Rounds {
+		b.rounds[r.Name] = r
+		b.shut[r.Name] = s.InForce(r.Name).Shut
+	}
+	for _, t := range s.Taps {
+		b.taps[t.Name] = t
+	}
+	return b
+}
+
+// unusable says why a reading's round or taps keep it from being used.
+func (b *bench) unusable(r survey.Reading) (survey.Problem, bool) {
+	if _, ok := b.rounds[r.Round]; !ok {
+		return survey.Problem{Column: "round", Text: r.Round, Reason: "this round is not in rounds.csv",
+			Remedy: "add the round, or write the name of the round the reading belongs to"}, true
+	}
+	taps := []struct{ column, name string }{{"tap", r.Tap}}
+	if r.Kind == survey.Difference {
+		taps = append(taps, struct{ column, name string }{"other_tap", r.OtherTap})
+	}
+	for _, x := range taps {
+		t, ok := b.taps[x.name]
+		switch {
+		case !ok:
+			return survey.Problem{Column: x.column, Text: x.name, Reason: "this tap is not in taps.csv",
+				Remedy: "add the tap with its level, or write the name it has there"}, true
+		case t.Pipe != "" && b.shut[r.Round][t.Pipe]:
+			return survey.Problem{Column: x.column, Text: x.name,
+				Reason: fmt.Sprintf("pipe %s is shut in round %s, so the reading says nothing of the works in use", t.Pipe, r.Round),
+				Remedy: "correct conditions.csv if the pipe was open"}, true
+		}
+	}
+	return survey.Problem{}, false
+}
+
+// correct applies bench check and barometer and states the uncertainties.
+func (b *bench) correct(r survey.Reading, g survey.Gauge) (survey.Corrected, survey.Problem, bool) {
 	c := survey.Corrected{Reading: r, Pressure: r.Value, Gain: g.GainSD}
 	step, reader := OwnSD(g)
-	c.Own = math.Hypot(step, reader)
-	if r.HalfRange > 0 {
-		c.Own = math.Hypot(c.Own, r.HalfRange/math.Sqrt(3))
+	c.Own = math.Sqrt(step*step + reader*reader + r.HalfRange*r.HalfRange/3)
+	limit := classError(g)
+	caveat := func(format string, args ...any) {
+		c.Caveats = append(c.Caveats, survey.Caveat(fmt.Sprintf(format, args...)))
 	}
-	limit := class(g) * g.Span()
+	if g.Name == "" {
+		caveat("no gauge named: taken as one of the gauges of this kind and unit, which are all alike, without bench check")
+	}
 	if !g.Accuracy.OK {
-		c.Caveats = append(c.Caveats, survey.Caveat(fmt.Sprintf("gauge %s states no accuracy: taken as class 1.6", g.Name)))
+		caveat("%s states no accuracy: taken as class %g", nameOf(g), 100*noClass)
 	}
 	if !g.Resolution.OK {
-		c.Caveats = append(c.Caveats, survey.Caveat(fmt.Sprintf("gauge %s states no resolution: taken as a fifth of its class error", g.Name)))
+		caveat("%s states no resolution: taken as a tenth of its class error", nameOf(g))
+	}
+	if r.Value > g.High || r.Value < g.Low-limit {
+		// Below the low end by no more than its class error a gauge at zero only
+		// shows its offset.
+		caveat("beyond the scale of %s", nameOf(g))
 	}
 	if len(g.Checks) > 0 {
-		e := benchError(g.Checks, r.Value)
+		e, inside := benchError(g.Checks, r.Value)
 		c.Pressure -= e
 		c.Applied = append(c.Applied, survey.Correction{What: "bench check", Amount: -e})
 		limit *= benchShare
+		if !inside {
+			caveat("beyond the points of the bench check of %s: the correction of the nearest one holds", nameOf(g))
+		}
+		if severalDates(g.Checks) {
+			caveat("bench checks of %s of several dates are used together", nameOf(g))
+		}
 	}
 	c.Shared = limit / math.Sqrt(3)
-	if g.Kind == survey.AbsoluteGauge {
-		b := round.Barometer
-		what := "barometer of the round"
-		if !b.OK {
-			b = survey.Some(water.StandardAtmosphere(s.Info.SiteLevel))
-			what = "standard atmosphere at the site's level"
-			c.BarometerSD = weatherSD
-			c.Caveats = append(c.Caveats, "no barometer stated: the standard atmosphere was used")
+	if g.Kind != survey.AbsoluteGauge {
+		return c, survey.Problem{}, true
+	}
+	barometer, what := b.rounds[r.Round].Barometer, "barometer of the round"
+	if !barometer.OK {
+		barometer, what = survey.Some(water.StandardAtmosphere(b.siteLevel)), "standard atmosphere at the site's level"
+		c.BarometerSD = weatherSD
+		caveat("round %s states no barometer: the standard atmosphere at the site's level was used", r.Round)
+		if math.IsNaN(barometer.V) {
+			return c, survey.Problem{Column: "gauge", Text: r.Gauge,
+				Reason: fmt.Sprintf("an absolute gauge needs the barometer, and the standard atmosphere is not defined at a site level of %g m", b.siteLevel),
+				Remedy: "state the barometer in rounds.csv, or mend site_level in survey.csv"}, false
 		}
-		c.Pressure -= b.V
-		c.Applied = append(c.Applied, survey.Correction{What: what, Amount: -b.V})
 	}
-	if r.Value > g.High || r.Value < g.Low {
-		c.Caveats = append(c.Caveats, survey.Caveat(fmt.Sprintf("beyond the scale of gauge %s", g.Name)))
-	}
-	return c
+	c.Pressure -= barometer.V
+	c.Applied = append(c.Applied, survey.Correction{What: what, Amount: -barometer.V})
+	return c, survey.Problem{}, true
 }
 
-// benchError is indicated minus applied at an indication: linear between the points,
-// the end points' error beyond them.
-func benchError(checks []survey.BenchCheck, v float64) float64 {
-	cs := append([]survey.BenchCheck(nil), checks...)
-	for i := 1; i < len(cs); i++ {
-		for j := i; j > 0 && cs[j].Indicated < cs[j-1].Indicated; j-- {
-			cs[j], cs[j-1] = cs[j-1], cs[j]
-		}
+func nameOf(g survey.Gauge) string {
+	if g.Name == "" {
+		return "the gauge"
 	}
-	e := func(i int) float64 { return cs[i].Indicated - cs[i].Applied }
-	last := len(cs) - 1
-	switch {
-	case v <= cs[0].Indicated:
-		return e(0)
-	case v >= cs[last].Indicated:
-		return e(last)
-	}
-	for i := 1; i <= last; i++ {
-		if v <= cs[i].Indicated {
-			span := cs[i].Indicated - cs[i-1].Indicated
-			if span == 0 {
-				return (e(i) + e(i-1)) / 2
-			}
-			t := (v - cs[i-1].Indicated) / span
-			return (1-t)*e(i-1) + t*e(i)
-		}
-	}
-	return e(last)
+	return "gauge " + g.Name
 }
