@@ -33,7 +33,7 @@ func DefaultPriors() Priors {
 	return Priors{
 		LnRoughness: math.Log(1.5), LnC: math.Log(1.07), LnK: math.Log(1.3), LnKKind: 0.15,
 		LnGroup: 0.5, HeadFactor: 0.015, ProfileFactor: 0.03, OutletCoefficient: 0.03,
-		FrictionLaw: 0.05, LnBore: 0.01, OpenLevel: 50,
+		FrictionLaw: 0.05, LnBore: 0.01, OpenLevel: 100,
 	}
 }
 

@@ -65,7 +65,7 @@ func (w *Workspace) reset() {
 func (w *Workspace) set(unknowns []Unknown, u []float64) {
 	w.reset()
 	for k, x := range unknowns {
-		theta := u[k] * x.SD
+		theta := x.Center + u[k]*x.SD
 		if theta == 0 {
 			continue
 		}

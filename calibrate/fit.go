@@ -103,6 +103,28 @@ func (m *Model) Fit(causes []Unknown, o Options) (*Fit, error) {
 	return f, f.settle()
 }
 
+// Sound fits sound works. Where something is left open (a draw-off or a level that
+// nobody stated), its prior is centred on a first estimate and the fit is done again, so
+// that only the readings speak of it. It moves the model's own priors: call it before
+// the model is shared.
+func (m *Model) Sound() (*Fit, error) {
+	f, err := m.Fit(nil, Options{})
+	if err != nil || !f.Converged {
+		return f, err
+	}
+	again := false
+	start := append([]float64(nil), f.U...)
+	for k := range m.Unknowns {
+		if m.Unknowns[k].Open {
+			m.Unknowns[k].Center, start[k], again = f.Theta(k), 0, true
+		}
+	}
+	if !again {
+		return f, nil
+	}
+	return m.Fit(nil, Options{Start: start})
+}
+
 // prepare makes the empty fit: unknowns, starting point, prior variances, weights.
 func (m *Model) prepare(causes []Unknown, o Options) (*Fit, error) {
 	if len(m.Obs) == 0 {
@@ -196,38 +218,54 @@ func (f *Fit) dataCovariance(j *mat.Dense) (*mat.Cholesky, error) {
 // the evidence of a cause needs.
 func (f *Fit) LnDet() float64 { return f.data.LogDet() }
 
-// Cov is the covariance of U: P - P J' V^-1 J P, equal to (P^-1 + J'J)^-1.
+// Cov is the covariance of U, (P^-1 + J'J)^-1, factorised with unit diagonal: the
+// information of an open flow may be 1e9 times that of a roughness, and its small
+// variance would drown in P - P J' V^-1 J P.
 func (f *Fit) Cov() *mat.SymDense {
 	if f.cov != nil {
 		return f.cov
 	}
-	n, k := f.J.Dims()
-	jp := mat.NewDense(n, k, nil)
-	for i := 0; i < n; i++ {
-		src, dst := f.J.RawRowView(i), jp.RawRowView(i)
-		for c := range src {
-			if !f.AtBound[c] {
-				dst[c] = src[c] * f.spread[c]
-			}
+	_, k := f.J.Dims()
+	info := mat.NewSymDense(k, nil)
+	info.SymOuterK(1, f.J.T())
+	scale := make([]float64, k)
+	for i := range scale {
+		if f.AtBound[i] {
+			pin(info, i)
+		} else {
+			info.SetSym(i, i, info.At(i, i)+1/f.spread[i])
+		}
+		scale[i] = 1 / math.Sqrt(info.At(i, i))
+	}
+	for i := 0; i < k; i++ {
+		for j := i; j < k; j++ {
+			info.SetSym(i, j, info.At(i, j)*scale[i]*scale[j])
 		}
 	}
-	// With V = L L', C = P - (L^-1 J P)'(L^-1 J P): no inverse is formed.
-	var l mat.TriDense
-	f.data.LTo(&l)
-	var half mat.Dense
-	if err := half.Solve(&l, jp); err != nil {
-		// V is at least the unit matrix, so its factor cannot be singular.
-		panic("calibrate: " + err.Error())
-	}
+	var ch mat.Cholesky
 	c := mat.NewSymDense(k, nil)
-	c.SymOuterK(-1, half.T())
-	for i := range f.spread {
-		if !f.AtBound[i] {
-			c.SetSym(i, i, math.Max(0, c.At(i, i)+f.spread[i]))
+	if ch.Factorize(info) {
+		// The error of InverseTo is a condition number; priors bound it.
+		_ = ch.InverseTo(c)
+	}
+	for i := 0; i < k; i++ {
+		for j := i; j < k; j++ {
+			c.SetSym(i, j, c.At(i, j)*scale[i]*scale[j])
+		}
+		if f.AtBound[i] {
+			c.SetSym(i, i, 0)
 		}
 	}
 	f.cov = c
 	return c
+}
+
+// pin takes an unknown that stands on its bound out of the information matrix.
+func pin(info *mat.SymDense, c int) {
+	for i := 0; i < info.SymmetricDim(); i++ {
+		info.SetSym(i, c, 0)
+	}
+	info.SetSym(c, c, 1)
 }
 
 // bounds of an unknown in prior standard deviations.

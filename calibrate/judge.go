@@ -10,7 +10,7 @@ import (
 )
 
 // Theta is unknown k in its working scale: ln(fitted/expected), or SI.
-func (f *Fit) Theta(k int) float64 { return f.U[k] * f.Unknowns[k].SD }
+func (f *Fit) Theta(k int) float64 { return f.Unknowns[k].Center + f.U[k]*f.Unknowns[k].SD }
 
 // ThetaSD is its standard uncertainty.
 func (f *Fit) ThetaSD(k int) float64 { return math.Sqrt(f.Cov().At(k, k)) * f.Unknowns[k].SD }

@@ -47,6 +47,9 @@ type Unknown struct {
 	// items have 0; a fault that physics makes one-sided has a sign.
 	Sign    int
 	Targets []Target
+	// Center is the prior mean of theta: 0, but for an open unknown the estimate of
+	// an earlier fit.
+	Center float64
 	// Start is where the fit starts from, in theta.
 	Start float64
 }

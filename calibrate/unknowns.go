@@ -119,7 +119,7 @@ func (m *Model) conditionUnknowns() {
 			for _, d := range f.DrawOffs[p.Name] {
 				u := Unknown{Kind: "draw-off", Item: p.Name, Quantity: "flow", Round: r.Name, Expected: d.Value.Or(0), SD: d.SD.Or(0)}
 				if !d.Value.OK {
-					u.SD, u.Open = scale, true
+					u.SD, u.Open = openFlow*scale, true
 				}
 				place(d, u, Target{class: onDrawOff, index: pi, round: ri, Weight: 1})
 			}
@@ -136,6 +136,11 @@ func (m *Model) conditionUnknowns() {
 		}
 	}
 }
+
+// openFlow is the prior SD of a draw-off that is to be estimated, in flows that the
+// system may be expected to carry. Sound then moves the prior's centre to the
+// estimate, so that it pulls nowhere; a much wider one would cost digits.
+const openFlow = 3
 
 // flowScale is the flow that a pipe of the system may be expected to carry, m3/s:
 // what is drawn in the busiest round, or the widest pipe at 1 m/s.

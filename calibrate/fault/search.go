@@ -56,7 +56,7 @@ type Diagnosis struct {
 
 // Diagnose searches for what is wrong.
 func Diagnose(m *calibrate.Model, set Settings) (*Diagnosis, error) {
-	sound, err := m.Fit(nil, calibrate.Options{})
+	sound, err := m.Sound()
 	if err != nil {
 		return nil, err
 	}

@@ -8,6 +8,7 @@
 //	velocity head     dp/(rho g)
 //	difference        h_tap - h_other = dp/(rho g) with water-filled lines, in which the
 //	                  levels cancel; with air-filled ones z_tap - z_other is added
+//	jet               Q = C A sqrt(2 p/rho) from the pitot pressure in a free jet
 //	flow, water level as read
 //
 // A water-filled gauge line adds rho g times the gauge's height above the tap to the
@@ -58,7 +59,8 @@ type repeat struct {
 }
 
 // FromCorrected averages repeats and converts, in the order of their first lines. A
-// jet is marked in s as set aside and comes back as a Problem. A water temperature, a
+// jet whose outlet is not described, or without pressure, is marked in s as set aside and
+// comes back as a Problem. A water temperature, a
 // latitude or a site level for which density or gravity is not defined is Fatal, and
 // the heads it bears on are left out.
 func FromCorrected(s *survey.Survey, cs []survey.Corrected) ([]survey.Head, survey.Problems) {
@@ -67,8 +69,8 @@ func FromCorrected(s *survey.Survey, cs []survey.Corrected) ([]survey.Head, surv
 	var order []repeat
 	groups := map[repeat][]survey.Corrected{}
 	for _, r := range cs {
-		if r.Kind == survey.Jet {
-			problems = append(problems, putJetAside(s, r))
+		if p, bad := c.jetProblem(s, r); bad {
+			problems = append(problems, p)
 			continue
 		}
 		if math.IsNaN(c.weight(r.Round)) {
@@ -85,18 +87,6 @@ func FromCorrected(s *survey.Survey, cs []survey.Corrected) ([]survey.Head, surv
 		out = append(out, c.head(groups[k]))
 	}
 	return out, problems
-}
-
-func putJetAside(s *survey.Survey, r survey.Corrected) survey.Problem {
-	p := survey.Problem{Column: "kind", Text: string(survey.Jet), Reason: "jets are not used by this version",
-		Remedy: "give the flow as a draw-off in conditions.csv"}
-	for i, x := range s.Readings {
-		if x.Source == r.Source && x.Kind == survey.Jet && x.Tap == r.Tap {
-			return s.PutAside(i, p)
-		}
-	}
-	p.Source, p.Severity = r.Source, survey.SetAside
-	return p
 }
 
 // head converts the repeats of one reading.
@@ -142,6 +132,11 @@ func (c *converter) head(rs []survey.Corrected) survey.Head {
 	case survey.FlowRate:
 		h.Quantity = survey.VolumeFlow
 		h.Value, h.Own, h.PerGauge = mean, own, 1
+	case survey.Jet:
+		q, slope := c.jet(r, g, mean)
+		h.Quantity = survey.OutletFlow
+		h.Value, h.Own, h.PerGauge = q, own*slope, slope
+		proportional = false
 	case survey.WaterLevel:
 		h.Quantity = survey.FreeWaterSurface
 		h.Value, h.Own, h.PerGauge = mean, own, 1
