@@ -79,7 +79,7 @@ func (c *converter) problems(cs []survey.Corrected) survey.Problems {
 
 // Line is what one line of readings says alone, for the table of heads.
 type Line struct {
-	Pressure     survey.Maybe // gauge pressure at the tap, Pa
+	Pressure     survey.Maybe // gauge pressure at the tap, of a jet at the pitot; Pa
 	PressureHead survey.Maybe // m of the water in the pipe
 	Piezometric  survey.Maybe // m above datum
 	Total        survey.Maybe // m above datum, at the pitot opening
@@ -104,6 +104,8 @@ func OfLine(s *survey.Survey, cs []survey.Corrected) map[survey.Source]Line {
 			} else {
 				l.Total = survey.Some(z + p/w)
 			}
+		case survey.Jet:
+			l.Pressure = survey.Some(c.atTap(r, c.gauge(r), r.Pressure))
 		case survey.Velocity:
 			l.Velocity = survey.Some(r.Pressure / w)
 		case survey.WaterLevel:

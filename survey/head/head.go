@@ -59,10 +59,9 @@ type repeat struct {
 }
 
 // FromCorrected averages repeats and converts, in the order of their first lines. A
-// jet whose outlet is not described, or without pressure, is marked in s as set aside and
-// comes back as a Problem. A water temperature, a
-// latitude or a site level for which density or gravity is not defined is Fatal, and
-// the heads it bears on are left out.
+// jet whose outlet is not described, or without pressure, is marked in s as set aside
+// and comes back as a Problem. A water temperature or a latitude for which density or
+// gravity is not defined is Fatal, and the heads it bears on are left out.
 func FromCorrected(s *survey.Survey, cs []survey.Corrected) ([]survey.Head, survey.Problems) {
 	c := newConverter(s)
 	problems := c.problems(cs)
@@ -133,9 +132,10 @@ func (c *converter) head(rs []survey.Corrected) survey.Head {
 		h.Quantity = survey.VolumeFlow
 		h.Value, h.Own, h.PerGauge = mean, own, 1
 	case survey.Jet:
-		q, slope := c.jet(r, g, mean)
+		q, slope, p := c.jet(r, g, mean)
 		h.Quantity = survey.OutletFlow
-		h.Value, h.Own, h.PerGauge = q, own*slope, slope
+		h.Pressure = survey.Some(p)
+		h.Value, h.Own, h.PerGauge, h.BarometerSD = q, own*slope, slope, r.BarometerSD*slope
 		proportional = false
 	case survey.WaterLevel:
 		h.Quantity = survey.FreeWaterSurface

@@ -7,12 +7,14 @@ import (
 )
 
 // jet gives the flow of a free jet, m3/s, and its derivative by the pitot's pressure:
-// p = rho/2 (Q/(C A))^2, so Q = C A sqrt(2 p/rho) and dQ/dp = Q/(2 p).
-func (c *converter) jet(r survey.Corrected, g survey.Gauge, mean float64) (q, slope float64) {
+// p = rho/2 (Q/(C A))^2, so Q = C A sqrt(2 p/rho) and dQ/dp = Q/(2 p). p is the mean of
+// the repeats. The uncertainty of the coefficient is not in it: it belongs to the
+// outlet and not to the reading.
+func (c *converter) jet(r survey.Corrected, g survey.Gauge, mean float64) (q, slope, p float64) {
 	t := c.taps[r.Tap]
-	p := c.atTap(r, g, mean)
+	p = c.atTap(r, g, mean)
 	q = t.OutletCoefficient.V * math.Pi / 4 * t.OutletBore.V * t.OutletBore.V * math.Sqrt(2*p/c.density(r.Round))
-	return q, q / (2 * p)
+	return q, q / (2 * p), p
 }
 
 // jetProblem: a jet needs the outlet's bore and coefficient, and a pressure.
