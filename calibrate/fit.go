@@ -147,8 +147,60 @@ func (m *Model) prepare(causes []Unknown, o Options) (*Fit, error) {
 		lo, hi := x.bounds()
 		f.U[c] = clamp(f.U[c], lo, hi)
 	}
-	f.weight = o.Weight
+	f.weight = m.weights(o.Weight)
 	return f, nil
+}
+
+// Leave keeps observation i out of every later fit: it is known to be a slip of the pen.
+// Its place in the list stays, with weight 0.
+func (m *Model) Leave(i int) {
+	if m.left == nil {
+		m.left = map[int]bool{}
+	}
+	m.left[i] = true
+}
+
+// Left reports whether observation i is kept out.
+func (m *Model) Left(i int) bool { return m.left[i] }
+
+// weights puts the observations that are left out into the weights of a fit.
+func (m *Model) weights(w []float64) []float64 {
+	if len(m.left) == 0 {
+		return w
+	}
+	out := make([]float64, len(m.Obs))
+	for i := range out {
+		out[i] = 1
+		if w != nil {
+			out[i] = w[i]
+		}
+		if m.left[i] {
+			out[i] = 0
+		}
+	}
+	return out
+}
+
+// Prior is the state of knowledge before any reading: everything at its expected
+// value, with V the covariance that the readings should have then.
+func (m *Model) Prior() (*Fit, error) {
+	f, err := m.prepare(nil, Options{})
+	if err != nil {
+		return nil, err
+	}
+	f.Status = "not fitted"
+	return f, f.settle()
+}
+
+// Surprise is how far observation i stands from what was expected before it was read,
+// measured minus expected over the standard deviation of that, and the latter in the
+// unit of its Value.
+func (f *Fit) Surprise(i int) (z, sd float64) {
+	v := 1.0
+	for c, x := range f.J.RawRowView(i) {
+		v += x * x * f.spread[c]
+	}
+	return -f.R[i] / math.Sqrt(v), math.Sqrt(v) * f.Model.Obs[i].Head.Own
 }
 
 // evaluate fills r with the whitened differences of the readings at u.

@@ -25,6 +25,7 @@ type Model struct {
 	// feeds their part of the system in that round.
 	Unread []Unread
 
+	left   map[int]bool // observations that stay out of every fit
 	base   hydraulic.Parameters
 	points map[string]int
 	links  map[string]int // pipes, then machines

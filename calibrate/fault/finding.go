@@ -22,6 +22,7 @@ func (d *Diagnosis) Findings() []survey.Finding {
 		}
 		out = append(out, d.finding(a))
 	}
+	out = append(out, d.unitFindings()...)
 	out = append(out, d.hints()...)
 	out = append(out, d.belowAtmosphere()...)
 	out = append(out, d.notCovered()...)

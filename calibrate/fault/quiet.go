@@ -179,7 +179,7 @@ func (d *Diagnosis) Smallest() []Smallest {
 
 // Misreadings lists accepted causes that blame one reading alone, for re-reading.
 func (d *Diagnosis) Misreadings() []survey.Alert {
-	var out []survey.Alert
+	out := d.exchangeAlerts()
 	for _, a := range d.Accepted {
 		if a.Kind != misread {
 			continue

@@ -43,6 +43,8 @@ type Diagnosis struct {
 	// Sound is the fit with everything sound; Final the one with the accepted causes.
 	Sound, Final *calibrate.Fit
 	Accepted     []Accepted
+	// Slips of the pen, found before the fit and left out of it.
+	Slips []Slip
 	// Limit is what |z| of any cause had to pass; Tests how many causes were tested.
 	Limit float64
 	Tests int
@@ -54,13 +56,23 @@ type Diagnosis struct {
 	set Settings
 }
 
-// Diagnose searches for what is wrong.
+// Diagnose searches for what is wrong. It moves the model's open priors and leaves
+// slips of the pen out of it, so a model belongs to one diagnosis.
 func Diagnose(m *calibrate.Model, set Settings) (*Diagnosis, error) {
+	found, err := slips(m)
+	if err != nil {
+		return nil, err
+	}
+	for _, s := range found {
+		for _, i := range s.Obs {
+			m.Leave(i)
+		}
+	}
 	sound, err := m.Sound()
 	if err != nil {
 		return nil, err
 	}
-	d := &Diagnosis{Model: m, Sound: sound, Final: sound, Causes: Candidates(m, set), set: set}
+	d := &Diagnosis{Slips: found, Model: m, Sound: sound, Final: sound, Causes: Candidates(m, set), set: set}
 	if !sound.Converged {
 		d.Caveats = append(d.Caveats, "the fit of sound works did not settle ("+sound.Status+"); no cause is named on it")
 		return d, nil
