@@ -2,6 +2,7 @@ package lsq
 
 import (
 	"math"
+	"slices"
 
 	"gonum.org/v1/gonum/blas/blas64"
 )
@@ -58,7 +59,40 @@ func (l *local) reduce(open []int, res []float64) {
 	s.tri.decompose()
 	s.c = append(s.c[:0], res[:n]...)
 	s.tri.transform(s.c)
-	s.deep = s.tri.singular(s.d)
+}
+
+// thin reduces to an independent set of the open columns, where they are dependent to
+// rounding. The others keep their place in this step: what they could do, the set can
+// (a basic solution, as in [More, section 3]).
+func (l *local) thin() {
+	l.reduce(l.open, l.res)
+	t := &l.sub.tri
+	if !t.singular(l.sub.d, l.qr.m) {
+		return
+	}
+	unit := &factor{}
+	unit.resize(t.m, t.n)
+	for k := range t.n {
+		c := unit.column(k)
+		copy(c[:k], t.column(k)[:k])
+		c[k] = t.diag[k]
+		if norm := blas64.Nrm2(vector(c)); norm > 0 {
+			blas64.Scal(1/norm, vector(c))
+		}
+		unit.diag[k] = c[k]
+	}
+	_, over, _ := unit.rank(l.qr.m)
+	if len(over) == 0 {
+		return
+	}
+	kept := l.open[:0]
+	for i, k := range l.open {
+		if !slices.Contains(over, i) {
+			kept = append(kept, k)
+		}
+	}
+	l.open = kept
+	l.reduce(l.open, l.res)
 }
 
 // step finds p within the radius and the bounds, and returns the decrease of the sum
@@ -72,7 +106,7 @@ func (l *local) step(radius, lambda float64) (promise, damping float64) {
 	l.res = append(l.res[:0], l.c[:n]...)
 	used := 0.0
 	for len(l.open) > 0 {
-		l.reduce(l.open, l.res)
+		l.thin()
 		room := math.Sqrt(math.Max(radius*radius-used, 0.01*radius*radius))
 		damping = l.sub.solve(room, lambda)
 		kept := l.open[:0]
@@ -130,14 +164,23 @@ func (l *local) promised() float64 {
 	return s
 }
 
-// descend is the step of last resort: along the scaled gradient, bent at the bounds,
-// shortened until it promises a decrease, which it must in the end [Kanzow].
+// descend is the step of last resort: along the scaled gradient to its minimum, bent at
+// the bounds, shortened until it promises a decrease, as it must in the end unless there
+// is no gradient but rounding [Kanzow].
 func (l *local) descend(radius float64) float64 {
 	size := 0.0
+	clear(l.p)
 	for _, k := range l.free {
-		size = math.Hypot(size, l.gradient(k)/l.d[k])
+		l.p[k] = l.gradient(k) / (l.d[k] * l.d[k])
+		size = math.Hypot(size, l.d[k]*l.p[k])
 	}
-	for t := radius / size; size > 0 && t > 0; t /= 4 {
+	l.qr.times(l.p, l.rp)
+	bend := blas64.Nrm2(vector(l.rp))
+	if size == 0 || bend == 0 {
+		return 0
+	}
+	t := math.Min(radius/size, size/bend*size/bend)
+	for range 40 {
 		clear(l.p)
 		clear(l.hit)
 		for _, k := range l.free {
@@ -150,6 +193,7 @@ func (l *local) descend(radius float64) float64 {
 		if promise := l.promised(); promise > 0 {
 			return promise
 		}
+		t /= 4
 	}
 	clear(l.p)
 	clear(l.hit)

@@ -2,34 +2,31 @@ package lsq
 
 import (
 	"math"
+	"slices"
 
 	"gonum.org/v1/gonum/blas/blas64"
 	"gonum.org/v1/gonum/mat"
 )
 
-// settled says whether the point meets both tolerances, and its relative offset.
+// settled says whether the point meets both tolerances, and its relative offset: what
+// a Gauss-Newton step within the bounds would take away.
 func (it *iteration) settled() (bool, float64) {
 	l := &it.local
-	if len(l.free) == 0 || it.sum == 0 {
+	if it.sum == 0 {
 		return true, 0
 	}
-	l.reduce(l.free, l.c)
-	r := math.Sqrt(it.sum)
-	offset := blas64.Nrm2(vector(l.sub.c[:len(l.free)])) / r
+	promise, _ := l.step(math.Inf(1), 0)
+	offset := math.Sqrt(promise / it.sum)
 	if offset > it.set.GradientTolerance {
 		return false, offset
 	}
-	l.step(math.Inf(1), 0)
-	return l.length(l.p) <= it.set.StepTolerance*(l.length(l.x)+r), offset
+	return l.length(l.p) <= it.set.StepTolerance*(l.length(l.x)+math.Sqrt(it.sum)), offset
 }
 
 // polish makes a last undamped Gauss-Newton step, kept if the sum of squares is no
 // worse: it squares the error that the tolerances left.
 func (it *iteration) polish() {
 	l := &it.local
-	if it.sum == 0 || len(l.free) == 0 {
-		return
-	}
 	promise, _ := l.step(math.Inf(1), 0)
 	if promise <= 0 {
 		return
@@ -78,9 +75,18 @@ func (it *iteration) finish(status Status) (*Result, error) {
 	return r, nil
 }
 
-// judge factorises the free columns of J, scaled to unit length, and fills in what is
-// read off the factors.
+// judge fills in what is read off the factors of J.
 func (r *Result) judge() {
+	r.factorise()
+	r.Rank, r.Undetermined, r.Condition = r.factor.rank(r.factor.m)
+	for i, c := range r.Undetermined {
+		r.Undetermined[i] = r.free[c]
+	}
+	r.fitness()
+}
+
+// factorise decomposes the free columns of J, scaled to unit length.
+func (r *Result) factorise() {
 	m, _ := r.J.Dims()
 	n := len(r.free)
 	rows := max(m, n)
@@ -102,11 +108,6 @@ func (r *Result) judge() {
 	}
 	f.decompose()
 	r.factor = f
-	r.Rank, r.Undetermined, r.Condition = f.rank()
-	for i, c := range r.Undetermined {
-		r.Undetermined[i] = r.free[c]
-	}
-	r.fitness()
 }
 
 // fitness fills in the gradient and the offset of the residuals.
@@ -116,17 +117,38 @@ func (r *Result) fitness() {
 	if size == 0 || norm == 0 {
 		return
 	}
-	c := make([]float64, r.factor.m)
+	// Reflectors of dependent columns point anywhere; the projection on the space of the
+	// columns needs an independent set.
+	d := r.determined()
+	c := make([]float64, d.factor.m)
 	copy(c, r.R)
-	r.factor.transform(c)
-	n := len(r.free)
-	r.Offset = blas64.Nrm2(vector(c[:n])) / size
+	d.factor.transform(c)
+	r.Offset = blas64.Nrm2(vector(c[:len(d.free)])) / size
 	g := 0.0
-	for k := range n {
-		s := r.factor.diag[k]*c[k] + blas64.Dot(vector(r.factor.column(k)[:k]), vector(c[:k]))
-		g = math.Hypot(g, s*r.scale[k])
+	for _, k := range r.free {
+		s := 0.0
+		for i, v := range r.R {
+			s += v * r.J.At(i, k)
+		}
+		g = math.Hypot(g, s)
 	}
 	r.Gradient = g / norm / size
+}
+
+// determined is r itself, or where its free columns are dependent the same with the
+// undetermined ones left out.
+func (r *Result) determined() *Result {
+	if len(r.Undetermined) == 0 {
+		return r
+	}
+	part := &Result{X: r.X, R: r.R, J: r.J}
+	for _, k := range r.free {
+		if !slices.Contains(r.Undetermined, k) {
+			part.free = append(part.free, k)
+		}
+	}
+	part.factorise()
+	return part
 }
 
 // triangle copies R into a dense upper triangle.

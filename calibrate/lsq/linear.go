@@ -3,7 +3,6 @@ package lsq
 import (
 	"fmt"
 	"math"
-	"slices"
 
 	"gonum.org/v1/gonum/blas/blas64"
 	"gonum.org/v1/gonum/mat"
@@ -43,10 +42,8 @@ func Linear(a *mat.Dense, y, w []float64) (*Result, error) {
 	res.judge()
 	if res.Rank < n {
 		res.Status = RankDeficient
-		res.basic()
-	} else {
-		res.solveFree()
 	}
+	res.determined().solveFree()
 	res.applyLinear()
 	return res, nil
 }
@@ -61,19 +58,6 @@ func (r *Result) solveFree() {
 	for i, k := range r.free {
 		r.X[k] = -c[i] / r.scale[i]
 	}
-}
-
-// basic solves for a set of independent columns and leaves the others zero. The free
-// unknowns and the rank stay those of the whole problem.
-func (r *Result) basic() {
-	part := &Result{X: r.X, R: r.R, J: r.J}
-	for k := range r.X {
-		if !slices.Contains(r.Undetermined, k) {
-			part.free = append(part.free, k)
-		}
-	}
-	part.judge()
-	part.solveFree()
 }
 
 // applyLinear brings the residuals from X = 0 to X, and the figures that follow.

@@ -128,15 +128,20 @@ func (f *factor) times(p, out []float64) {
 }
 
 // singular says whether a diagonal entry of R, relative to the given size of its
-// column, is no more than rounding.
-func (f *factor) singular(scale []float64) bool {
+// column, is no more than the rounding of rows-long sums.
+func (f *factor) singular(scale []float64, rows int) bool {
 	for k, d := range f.diag {
-		if math.Abs(d) <= float64(f.m)*epsilon*scale[k] {
+		if math.Abs(d) <= rounding(rows)*scale[k] {
 			return true
 		}
 	}
 	return false
 }
+
+// rounding is the share of a column's length that reflections of so many rows may leave
+// where nothing should be left. The bound of [Golub, section 5.2.1] is proportional to
+// the rows; ten of it covers its constant.
+func rounding(rows int) float64 { return 10 * float64(rows) * epsilon }
 
 // epsilon is the spacing of the double-precision numbers at one.
 const epsilon = 0x1p-52

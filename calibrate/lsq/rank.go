@@ -9,8 +9,8 @@ import (
 
 // rank finds the numerical rank of R by QR with column pivoting [Golub, algorithm
 // 5.4.1], the columns left over, and the condition number. R should have columns of
-// about unit length.
-func (f *factor) rank() (rank int, over []int, condition float64) {
+// about unit length; rows is the number of rows it came from.
+func (f *factor) rank(rows int) (rank int, over []int, condition float64) {
 	n := f.n
 	if n == 0 {
 		return 0, nil, 1
@@ -23,7 +23,7 @@ func (f *factor) rank() (rank int, over []int, condition float64) {
 		copy(t.column(k)[:k], f.column(k)[:k])
 		t.column(k)[k] = f.diag[k]
 	}
-	tol := float64(max(f.m, n)) * epsilon
+	tol := rounding(rows)
 	for k := 0; k < n; k++ {
 		// Norms are formed afresh: downdating them loses what decides the rank.
 		best, size := k, -1.0

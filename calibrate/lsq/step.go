@@ -6,13 +6,12 @@ import (
 	"gonum.org/v1/gonum/blas/blas64"
 )
 
-// subproblem is: minimise |R p + c|^2 subject to |D p| <= radius, for a triangular R
-// (n by n). It keeps its work space between calls.
+// subproblem is: minimise |R p + c|^2 subject to |D p| <= radius, for a regular
+// triangle R (n by n). It keeps its work space between calls.
 type subproblem struct {
 	tri   factor    // R of the free columns
 	c     []float64 // transformed residuals
 	d     []float64 // scale of each free column
-	deep  bool      // R is singular to rounding
 	p     []float64 // the last step
 	top   factor    // R after damping
 	low   []float64 // the damping rows, by columns
@@ -30,15 +29,12 @@ func (s *subproblem) solve(radius, lambda float64) float64 {
 	if n == 0 {
 		return 0
 	}
-	lower := s.floor()
-	length := s.undamped(lower)
+	length := s.undamped()
 	if length <= 1.1*radius {
 		return 0
 	}
-	// Where R is regular, Newton on 1/|D p| from zero gives a lower limit [More, 5.3].
-	if !s.deep {
-		lower = (length - radius) / radius / s.slope(&s.tri, length)
-	}
+	// Newton on 1/|D p| from zero gives a lower limit [More, 5.3].
+	lower := (length - radius) / radius / s.slope(&s.tri, length)
 	upper := s.gradient() / radius
 	if upper == 0 {
 		return 0
@@ -67,21 +63,8 @@ func (s *subproblem) solve(radius, lambda float64) float64 {
 	return lambda
 }
 
-// floor is the damping that stands for none: zero, or where R is singular just enough
-// for the step to leave the undetermined directions alone.
-func (s *subproblem) floor() float64 {
-	if !s.deep {
-		return 0
-	}
-	e := 100 * float64(s.tri.n) * epsilon
-	return e * e
-}
-
 // undamped puts the Gauss-Newton step into p and returns |D p|.
-func (s *subproblem) undamped(lambda float64) float64 {
-	if lambda > 0 {
-		return s.damped(lambda)
-	}
+func (s *subproblem) undamped() float64 {
 	for i := range s.p {
 		s.p[i] = -s.c[i]
 	}
