@@ -28,6 +28,7 @@ type Result struct {
 	Parameters []ParameterRow `json:"parameters"`
 	Residuals  []ResidualRow  `json:"residuals"`
 	Losses     []LossRow      `json:"losses"`
+	Costs      []Cost         `json:"costs"` // none where the survey states no price
 	Profiles   []Profile      `json:"profiles"`
 	Cautions   []string       `json:"cautions"`
 }
@@ -192,4 +193,15 @@ type ProfileReading struct {
 	Bar   float64 `json:"bar"`   // half length of the 95 % bar, m
 	Total bool    `json:"total"` // of total head; else piezometric
 	Text  string  `json:"text"`  // as read, for a pointer
+	Note  string  `json:"note"`  // beside the mark: the finding that explains it, such as "F3"
+}
+
+// Cost is what a finding costs while it stands, where survey.csv gives the price.
+type Cost struct {
+	Finding  string       `json:"finding"`  // its ID
+	Power    survey.Maybe `json:"power"`    // W, at the pump's shaft supply
+	Energy   survey.Maybe `json:"energy"`   // J a year
+	Money    survey.Maybe `json:"money"`    // Currency a year
+	Currency string       `json:"currency"` // as written in survey.csv
+	Basis    string       `json:"basis"`    // head, flow, hours, efficiency and price it was reckoned with
 }
