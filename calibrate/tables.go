@@ -87,3 +87,13 @@ func (f *Fit) HeadsAt(round int, tap string) (velocity, piezometric float64) {
 
 // RoundIndex finds a round by name; -1 where there is none.
 func (m *Model) RoundIndex(name string) int { return find(m.rounds, name) }
+
+// LocalVelocityAt is the velocity head at a pitot opening by the fit; depth from the
+// near wall, not stated: the centreline.
+func (f *Fit) LocalVelocityAt(round int, tap string, depth survey.Maybe) float64 {
+	p := f.Model.ProbeOf(tap, hydraulic.LocalVelocityHead)
+	if depth.OK {
+		p.Depth = depth.V
+	}
+	return f.work.solvers[round].Read(p)
+}

@@ -252,33 +252,11 @@ func orElse(s, def string) string {
 	return s
 }
 
-// settle names the reading that parts the members of a class.
+// settle names the reading that parts the members of a class best.
 func (d *Diagnosis) settle(a *Accepted) string {
-	all := append([]Rival{{Cause: a.Cause}}, a.Class...)
-	for _, c := range all {
-		if c.Kind == survey.PartClosedValve || c.Kind == survey.BlockedFitting {
-			l := d.Model.LinkIndex(d.pipeOf(c.Cause))
-			r, q := d.busiest(l)
-			return fmt.Sprintf("Read just before and just after %s at %s L/s or more (as in round %s): if it is the cause, most of the excess stands across those few metres; if not, almost none of it.",
-				c.Item, unit.Significant(1e3*q, 2), d.Model.Rounds[r].Name)
-		}
+	next := d.nextFor(a)
+	if len(next) == 0 {
+		return "No single reading that was tried would part them: take the causes in turn, the cheapest first."
 	}
-	var pipes []string
-	for _, c := range all {
-		if c.Kind == survey.FouledPipe {
-			pipes = append(pipes, c.Item)
-		}
-	}
-	if len(pipes) > 1 {
-		return fmt.Sprintf("Read at the joint between %s at the largest flow: the excess then shows on one side of it.", strings.Join(pipes, " and "))
-	}
-	for _, c := range all {
-		if c.Kind == survey.GaugeOff || c.Kind == survey.LevelWrong {
-			return "Put another gauge on that tap, or carry that gauge to another tap: the error goes with the gauge or stays with the level."
-		}
-		if c.Kind == survey.UnrecordedFlow {
-			return "Measure the flow a second time on either side of the suspected place, and read a round with everything drawn off shut."
-		}
-	}
-	return ""
+	return next[0].Sentence()
 }
