@@ -160,6 +160,20 @@ func (m *Model) Leave(i int) {
 	m.left[i] = true
 }
 
+// OpenRounds marks the rounds in which a flow or a level was not stated.
+func (m *Model) OpenRounds() map[int]bool {
+	out := map[int]bool{}
+	for _, u := range m.Unknowns {
+		if !u.Open {
+			continue
+		}
+		for _, t := range u.Targets {
+			out[t.round] = true
+		}
+	}
+	return out
+}
+
 // Left reports whether observation i is kept out.
 func (m *Model) Left(i int) bool { return m.left[i] }
 

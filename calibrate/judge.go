@@ -42,12 +42,29 @@ func (f *Fit) DoF() int {
 			d++
 		}
 	}
-	for _, x := range f.Unknowns {
-		if x.Open {
+	for k, x := range f.Unknowns {
+		if x.Open && f.Told(k) > 0.5 { // an open flow that no reading sees takes none away
 			d--
 		}
 	}
 	return d
+}
+
+// OpenBelow reports whether a pipe's roughness could as well be nothing: the readings
+// have told an upper bound but cannot tell the wall from a smooth one, as the likelihood
+// hardly changes when ln k is lowered by five (a factor of 150).
+func (f *Fit) OpenBelow(k int) bool {
+	x := f.Unknowns[k]
+	if x.Kind != "pipe" || x.Quantity != "roughness" || f.Told(k) < 0.2 {
+		return false
+	}
+	x.SD, x.Sign = 1, 0
+	here, err := f.Profiled([]Unknown{x}, []float64{0})
+	if err != nil {
+		return false
+	}
+	smooth, err := f.Profiled([]Unknown{x}, []float64{-5})
+	return err == nil && smooth-here < 3.841
 }
 
 // GlobalP is the probability that sound works (with the causes allowed) and

@@ -21,8 +21,10 @@ type Next struct {
 	Round   string // whose draw-offs it is to be taken with
 	Scale   float64
 	Flow    float64 // m3/s in the suspected pipe
-	// Difference is what separates the two likeliest causes there, m.
-	Difference float64
+	// Difference is what separates the likeliest cause from Against there, in m (or
+	// m3/s); Against is the rival that the reading parts best from it.
+	Likeliest, Against string
+	Difference         float64
 	// Gain is the expected drop of entropy over the causes, in nats (Lindley 1956).
 	Gain float64
 	// Settles is the chance that the reading puts the true one of the two first.
@@ -67,7 +69,7 @@ func (d *Diagnosis) NextReadings() []Next {
 const nextPerFinding = 5
 
 func (d *Diagnosis) nextFor(a *Accepted) []Next {
-	fits, probability := d.liveFits(a)
+	fits, probability, names := d.liveFits(a)
 	if len(fits) < 2 {
 		return nil
 	}
@@ -87,7 +89,7 @@ func (d *Diagnosis) nextFor(a *Accepted) []Next {
 			continue
 		}
 		for _, p := range d.places(a) {
-			n, ok := judge(worlds, probability, p)
+			n, ok := judge(worlds, probability, names, p)
 			if !ok {
 				continue
 			}
@@ -123,28 +125,26 @@ func (d *Diagnosis) itemOf(a *Accepted) string {
 }
 
 // liveFits refits each live cause in the place of the accepted one.
-func (d *Diagnosis) liveFits(a *Accepted) ([]*calibrate.Fit, []float64) {
+func (d *Diagnosis) liveFits(a *Accepted) (fits []*calibrate.Fit, p []float64, names []string) {
 	var rest []Cause
 	for i := range d.Accepted {
 		if &d.Accepted[i] != a {
 			rest = append(rest, d.Accepted[i].Cause)
 		}
 	}
-	var fits []*calibrate.Fit
-	var p []float64
 	sum := 0.0
 	for _, c := range append([]Rival{{Cause: a.Cause, Probability: a.Probability}}, a.Class...) {
 		t := d.fitOf(append(append([]Cause(nil), rest...), c.Cause), nil)
 		if t == nil {
 			continue
 		}
-		fits, p = append(fits, t.fit), append(p, c.Probability)
+		fits, p, names = append(fits, t.fit), append(p, c.Probability), append(names, plain(c.Cause))
 		sum += c.Probability
 	}
 	for i := range p {
 		p[i] /= sum
 	}
-	return fits, p
+	return fits, p, names
 }
 
 func (d *Diagnosis) busiestRound() int {
@@ -218,7 +218,7 @@ func (d *Diagnosis) near(a *Accepted, p survey.Pipe) bool {
 }
 
 // judge predicts a reading under every live cause and works out what it would tell.
-func judge(worlds []*calibrate.WhatIf, p []float64, at place) (Next, bool) {
+func judge(worlds []*calibrate.WhatIf, p []float64, names []string, at place) (Next, bool) {
 	mu, sd := make([]float64, len(worlds)), make([]float64, len(worlds))
 	for k, w := range worlds {
 		e := w.Read(at.probes, at.weights)
@@ -227,12 +227,17 @@ func judge(worlds []*calibrate.WhatIf, p []float64, at place) (Next, bool) {
 		}
 		mu[k], sd[k] = e.Value, math.Hypot(e.SD, at.noise)
 	}
-	n := Next{Where: at.words, Gain: entropyDrop(p, mu, sd)}
-	// The two likeliest are the first two: classes are sorted by their odds.
-	n.Difference = mu[0] - mu[1]
-	s := math.Sqrt((sd[0]*sd[0] + sd[1]*sd[1]) / 2)
-	n.Settles = 1 - distuv.UnitNormal.CDF(-math.Abs(n.Difference)/(2*s))
-	return n, s > 0
+	n := Next{Where: at.words, Gain: entropyDrop(p, mu, sd), Likeliest: names[0]}
+	// The likeliest is the first: classes are sorted by their odds.
+	best := -1.0
+	for k := 1; k < len(worlds); k++ {
+		s := math.Sqrt((sd[0]*sd[0] + sd[k]*sd[k]) / 2)
+		if apart := math.Abs(mu[0]-mu[k]) / s; apart > best {
+			best, n.Against, n.Difference = apart, names[k], mu[0]-mu[k]
+		}
+	}
+	n.Settles = 1 - distuv.UnitNormal.CDF(-best/2)
+	return n, best >= 0
 }
 
 // entropyDrop is the expected fall of the entropy over causes when a reading with laws
@@ -283,6 +288,6 @@ func (n Next) Sentence() string {
 	if len(n.Where) > 8 && n.Where[:8] == "a second" {
 		diff = unit.Significant(1e3*math.Abs(n.Difference), 2) + " L/s"
 	}
-	return fmt.Sprintf("Read at %s %s: the two likeliest causes differ there by %s, and the reading settles it with a probability of %.0f %%.",
-		n.Where, at, diff, math.Floor(100*n.Settles))
+	return fmt.Sprintf("Read at %s %s: %q and %q differ there by %s, and the reading parts the two with a probability of %.0f %%.",
+		n.Where, at, n.Likeliest, n.Against, diff, math.Floor(100*n.Settles))
 }

@@ -22,7 +22,8 @@ func (d *Diagnosis) hints() []survey.Finding {
 	}
 	var list []item
 	for i, c := range d.Causes {
-		if d.Z[i] == 0 || c.Kind == misread {
+		// What passes the limit and was not accepted has been weighed by the search.
+		if d.Z[i] == 0 || c.Kind == misread || math.Abs(d.Z[i]) > d.Limit {
 			continue
 		}
 		p := math.Erfc(math.Abs(d.Z[i]) / math.Sqrt2)

@@ -35,7 +35,13 @@ func slips(m *calibrate.Model) ([]Slip, error) {
 	}
 	var out []Slip
 	taken := map[int]bool{}
+	open := m.OpenRounds()
 	for i, o := range m.Obs {
+		if open[o.Round] {
+			// A flow or level that nobody stated leaves nothing to be surprised at.
+			taken[i] = true
+			continue
+		}
 		if s, ok := wrongUnit(f, i, o.Head); ok {
 			out = append(out, s)
 			taken[i] = true

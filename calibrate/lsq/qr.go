@@ -51,6 +51,11 @@ func (f *factor) decompose() {
 		}
 		reach = max(end, k+1)
 		f.last[k] = reach
+		if reach == k+1 {
+			// Already triangular here: a reflector of zero stands for none.
+			f.diag[k], c[k] = c[k], 0
+			continue
+		}
 		f.diag[k] = reflector(c[k:reach])
 		if f.diag[k] == 0 {
 			continue

@@ -7,14 +7,24 @@ import (
 	"gonum.org/v1/gonum/blas/blas64"
 )
 
-// rank finds the numerical rank of R by QR with column pivoting [Golub, algorithm
-// 5.4.1], the columns left over, and the condition number. R should have columns of
-// about unit length; rows is the number of rows it came from.
+// rank finds the numerical rank of R, the columns left over, and the condition number.
+// R should have columns of about unit length; rows is the number of rows it came from.
 func (f *factor) rank(rows int) (rank int, over []int, condition float64) {
-	n := f.n
-	if n == 0 {
+	if f.n == 0 {
 		return 0, nil, 1
 	}
+	if !slices.Contains(f.diag, 0) {
+		// Pivoting costs as much as the factorisation and is only for doubtful cases.
+		if c := f.condition(); c < 1e8 {
+			return f.n, nil, c
+		}
+	}
+	return f.pivot(rounding(rows))
+}
+
+// pivot finds the rank by QR with column pivoting [Golub, algorithm 5.4.1].
+func (f *factor) pivot(tol float64) (rank int, over []int, condition float64) {
+	n := f.n
 	t := &factor{}
 	t.resize(n, n)
 	perm := make([]int, n)
@@ -23,7 +33,6 @@ func (f *factor) rank(rows int) (rank int, over []int, condition float64) {
 		copy(t.column(k)[:k], f.column(k)[:k])
 		t.column(k)[k] = f.diag[k]
 	}
-	tol := rounding(rows)
 	for k := 0; k < n; k++ {
 		// Norms are formed afresh: downdating them loses what decides the rank.
 		best, size := k, -1.0
