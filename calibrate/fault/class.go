@@ -16,7 +16,7 @@ func (d *Diagnosis) conclude(chosen []Cause) error {
 	if len(chosen) == 0 {
 		return nil
 	}
-	start := d.fitOf(chosen, nil)
+	start := d.fitOf(chosen)
 	if start == nil {
 		d.Caveats = append(d.Caveats, "the fit with the accepted causes did not settle; no cause is named on it")
 		return nil
@@ -47,7 +47,7 @@ func (d *Diagnosis) conclude(chosen []Cause) error {
 // compare fills the class, the rivals and the probability of an accepted cause,
 // the other accepted ones being kept.
 func (d *Diagnosis) compare(a *Accepted, rest []Cause) error {
-	base := d.fitOf(rest, nil)
+	base := d.fitOf(rest)
 	if base == nil {
 		a.Probability = math.NaN()
 		return nil
@@ -68,7 +68,7 @@ func (d *Diagnosis) compare(a *Accepted, rest []Cause) error {
 		}
 	}
 	if mine == nil {
-		if mine = d.fitOf(append(append([]Cause(nil), rest...), a.Cause), nil); mine == nil {
+		if mine = d.fitOf(append(append([]Cause(nil), rest...), a.Cause)); mine == nil {
 			a.Probability = math.NaN()
 			return nil
 		}

@@ -134,7 +134,7 @@ func (d *Diagnosis) liveFits(a *Accepted) (fits []*calibrate.Fit, p []float64, n
 	}
 	sum := 0.0
 	for _, c := range append([]Rival{{Cause: a.Cause, Probability: a.Probability}}, a.Class...) {
-		t := d.fitOf(append(append([]Cause(nil), rest...), c.Cause), nil)
+		t := d.fitOf(append(append([]Cause(nil), rest...), c.Cause))
 		if t == nil {
 			continue
 		}

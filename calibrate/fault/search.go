@@ -1,8 +1,10 @@
 package fault
 
 import (
+	"fmt"
 	"math"
 	"sort"
+	"strings"
 
 	"tapround/calibrate"
 )
@@ -54,6 +56,9 @@ type Diagnosis struct {
 	Caveats []string
 
 	set Settings
+	// known keeps trials by the names of their causes: the search comes back to the same
+	// sets many times.
+	known map[string]*trial
 }
 
 // Diagnose searches for what is wrong. It moves the model's open priors and leaves
@@ -108,6 +113,7 @@ type trial struct {
 	// -Phi/2 - ln det/2, plus ln 2 for each one-sided cause, whose prior lives on
 	// one side only [Kass, Laplace approximation].
 	evidence float64
+	causes   []Cause
 	prior    float64 // ln of the causes' prior odds
 	free     float64 // Phi without the causes' own prior rows
 }
@@ -120,7 +126,7 @@ func (t *trial) score() float64 { return t.evidence + t.prior }
 func (d *Diagnosis) try(causes []Cause, start []float64, theta float64) *trial {
 	u := append([]float64(nil), start...)
 	unknowns := make([]calibrate.Unknown, len(causes))
-	t := &trial{}
+	t := &trial{causes: append([]Cause(nil), causes...)}
 	for i, c := range causes {
 		unknowns[i] = c.Unknown
 		t.prior += math.Log(c.Prior / (1 - c.Prior))
@@ -145,7 +151,21 @@ func (d *Diagnosis) try(causes []Cause, start []float64, theta float64) *trial {
 			}
 		}
 	}
+	if d.known == nil {
+		d.known = map[string]*trial{}
+	}
+	d.known[key(causes)] = t
 	return t
+}
+
+// key names a set of causes whatever their order.
+func key(causes []Cause) string {
+	names := make([]string, len(causes))
+	for i, c := range causes {
+		names[i] = fmt.Sprintf("%s %s %d", c.Name(), c.Variant, c.reading)
+	}
+	sort.Strings(names)
+	return strings.Join(names, "|")
 }
 
 // best finds the cause that, added to those chosen, has the greatest posterior
@@ -241,7 +261,12 @@ func has(list []Cause, c Cause) bool {
 	return false
 }
 
-func (d *Diagnosis) start() *trial { return d.try(nil, d.Sound.U, 0) }
+func (d *Diagnosis) start() *trial {
+	if t := d.known[""]; t != nil {
+		return t
+	}
+	return d.try(nil, d.Sound.U, 0)
+}
 
 // forward adds the best cause until none passes.
 func (d *Diagnosis) forward() ([]Cause, error) {
@@ -257,10 +282,14 @@ func (d *Diagnosis) forward() ([]Cause, error) {
 	return chosen, nil
 }
 
-// fitOf refits a set of causes from the sound estimate.
-func (d *Diagnosis) fitOf(causes []Cause, like *trial) *trial {
-	if like != nil {
-		return d.try(causes, like.fit.U, 0)
+// fitOf refits a set of causes: it is taken from the trials already made, or started from
+// one with one cause more, or built up from the sound estimate cause by cause.
+func (d *Diagnosis) fitOf(causes []Cause) *trial {
+	if t := d.known[key(causes)]; t != nil {
+		return d.ordered(t, causes)
+	}
+	if t := d.fromLarger(causes); t != nil {
+		return t
 	}
 	t := d.start()
 	for i := range causes {
@@ -285,18 +314,83 @@ func (d *Diagnosis) fitOf(causes []Cause, like *trial) *trial {
 	return t
 }
 
+// ordered gives a known trial with its causes in the order asked for, since the place of
+// a cause in the fit follows it.
+func (d *Diagnosis) ordered(t *trial, causes []Cause) *trial {
+	for i := range causes {
+		if !same(t.causes[i], causes[i]) {
+			return d.try(causes, d.reorder(t, causes), 0)
+		}
+	}
+	return t
+}
+
+// reorder lays the estimate of a trial out for another list of causes, all of them in it.
+func (d *Diagnosis) reorder(t *trial, causes []Cause) []float64 {
+	base := len(d.Model.Unknowns)
+	u := append([]float64(nil), t.fit.U[:base]...)
+	for _, c := range causes {
+		for i, x := range t.causes {
+			if same(c, x) {
+				u = append(u, t.fit.U[base+i])
+			}
+		}
+	}
+	return u
+}
+
+// fromLarger starts from a known trial that has all of these causes and one more.
+func (d *Diagnosis) fromLarger(causes []Cause) *trial {
+	if len(causes) == 0 {
+		return nil
+	}
+	for _, k := range d.keys() {
+		t := d.known[k]
+		if len(t.causes) != len(causes)+1 {
+			continue
+		}
+		all := true
+		for _, c := range causes {
+			all = all && holds(t.causes, c)
+		}
+		if all {
+			return d.try(causes, d.reorder(t, causes), 0)
+		}
+	}
+	return nil
+}
+
+// keys in order, so that every run takes the same way.
+func (d *Diagnosis) keys() []string {
+	out := make([]string, 0, len(d.known))
+	for k := range d.known {
+		out = append(out, k)
+	}
+	sort.Strings(out)
+	return out
+}
+
+func holds(list []Cause, c Cause) bool {
+	for _, x := range list {
+		if same(x, c) {
+			return true
+		}
+	}
+	return false
+}
+
 // exchange tries, for each chosen cause, every other in its place, and keeps what
 // raises the posterior; until nothing changes.
 func (d *Diagnosis) exchange(chosen []Cause) ([]Cause, error) {
 	if len(chosen) < 2 {
 		return chosen, nil
 	}
-	at := d.fitOf(chosen, nil)
+	at := d.fitOf(chosen)
 	for pass := 0; pass < 3 && at != nil; pass++ {
 		changed := false
 		for i := range chosen {
 			rest := without(chosen, i)
-			base := d.fitOf(rest, nil)
+			base := d.fitOf(rest)
 			if base == nil {
 				continue
 			}
@@ -319,13 +413,13 @@ func (d *Diagnosis) exchange(chosen []Cause) ([]Cause, error) {
 // backward drops causes that the others have made needless.
 func (d *Diagnosis) backward(chosen []Cause) ([]Cause, error) {
 	for len(chosen) > 0 {
-		full := d.fitOf(chosen, nil)
+		full := d.fitOf(chosen)
 		if full == nil {
 			return chosen, nil
 		}
 		worst, at := math.Inf(1), -1
 		for i := range chosen {
-			if t := d.fitOf(without(chosen, i), nil); t != nil && t.free-full.free < worst {
+			if t := d.fitOf(without(chosen, i)); t != nil && t.free-full.free < worst {
 				worst, at = t.free-full.free, i
 			}
 		}
