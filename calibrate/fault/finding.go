@@ -236,12 +236,20 @@ func (d *Diagnosis) open(a *Accepted, f *survey.Finding) {
 	}
 }
 
+// lossView is the loss view of the final fit, made once.
+func (d *Diagnosis) lossView() []calibrate.Loss {
+	if d.losses == nil {
+		d.losses = d.Final.Losses()
+	}
+	return d.losses
+}
+
 // around names the taps next to the members of a class, or the ends of the pipe
 // where no tap stands beyond.
 func (d *Diagnosis) around(a *Accepted) (from, to string) {
 	pipe := d.pipeOf(a.Cause)
 	best, hits := calibrate.Loss{}, 0
-	for _, l := range d.Final.Losses() {
+	for _, l := range d.lossView() {
 		n := 0
 		for _, it := range l.Items {
 			if it == a.Item {

@@ -73,7 +73,7 @@ func (d *Diagnosis) nextFor(a *Accepted) []Next {
 	if len(fits) < 2 {
 		return nil
 	}
-	busiest := d.busiestRound()
+	busiest, item := d.busiestRound(), d.itemOf(a)
 	var out []Next
 	for _, scale := range []float64{1, 1.5, 0} {
 		var worlds []*calibrate.WhatIf
@@ -93,7 +93,7 @@ func (d *Diagnosis) nextFor(a *Accepted) []Next {
 			if !ok {
 				continue
 			}
-			n.Finding, n.Round, n.Scale = d.itemOf(a), d.Model.Rounds[busiest].Name, scale
+			n.Finding, n.Round, n.Scale = item, d.Model.Rounds[busiest].Name, scale
 			if p.link >= 0 {
 				n.Flow = math.Abs(worlds[0].Flow(p.link))
 			}

@@ -58,7 +58,8 @@ type Diagnosis struct {
 	set Settings
 	// known keeps trials by the names of their causes: the search comes back to the same
 	// sets many times.
-	known map[string]*trial
+	known  map[string]*trial
+	losses []calibrate.Loss
 }
 
 // Diagnose searches for what is wrong. It moves the model's open priors and leaves

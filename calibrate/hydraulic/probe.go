@@ -231,7 +231,7 @@ func (v *Solver) Gradient(p Probe, g *Gradient) error {
 	}
 	if b != 0 {
 		l := s.links[r.link]
-		d := v.slopeAt(r.link)
+		d := v.atSlope[r.link]
 		if row := s.row[l.From]; row >= 0 {
 			v.rhs[row] += b / d
 		}
@@ -260,7 +260,7 @@ func (v *Solver) Gradient(p Probe, g *Gradient) error {
 		if !v.flows(i) {
 			continue
 		}
-		d := v.slopeAt(i)
+		d := v.atSlope[i]
 		// Sensitivity of y to a unit of extra loss in this link.
 		w := (mu(l.From) - mu(l.To)) / d
 		if i == r.link {
@@ -293,31 +293,19 @@ func (v *Solver) Gradient(p Probe, g *Gradient) error {
 	return nil
 }
 
-func (v *Solver) slopeAt(i int) float64 {
-	_, d := v.law(i, v.st.Flow[i])
-	return math.Max(d, leastSlope)
-}
-
 // spread adds w times the derivative of link i's loss by its parameters.
 func (v *Solver) spread(i int, w float64, g *Gradient) {
 	if w == 0 {
 		return
 	}
 	l := v.sys.links[i]
-	q := v.st.Flow[i]
 	if l.Machine != nil {
-		h, _ := v.law(i, q)
-		g.HeadFactor[i] += w * h / v.p.HeadFactor[i]
+		g.HeadFactor[i] += w * v.atParam[i]
 		return
 	}
-	loss := l.Pipe.Loss(q, v.p.LnRough[i], v.c.Viscosity, v.c.Gravity)
-	_, _, dp := v.outletHead(i, q)
-	g.LnRough[i] += w * (loss.DParam + dp)
-	for k, f := range l.Pipe.Fittings {
-		if q < 0 && !math.IsNaN(f.ReverseK) {
-			continue
-		}
-		h, _ := friction.Minor(q, v.kOf(i, k, q), f.Bore, v.c.Gravity)
-		g.LnK[v.sys.first[i]+k] += w * h
+	g.LnRough[i] += w * v.atParam[i]
+	first := v.sys.first[i]
+	for k := range l.Pipe.Fittings {
+		g.LnK[first+k] += w * v.atMinor[first+k]
 	}
 }

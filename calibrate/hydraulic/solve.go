@@ -24,7 +24,10 @@ type Solver struct {
 	shut    []bool // closed on purpose
 	live    []bool // per point: fed through open links
 	ext     []float64
-	lambda  []float64
+	// What every gradient at the solution needs, filled once by finish: slope of each
+	// link, its loss's derivative by its own parameter, and each fitting's loss (0 where
+	// the coefficient met is not a parameter).
+	atSlope, atParam, atMinor []float64
 }
 
 // NewSolver makes a workspace.
@@ -32,7 +35,7 @@ func (s *System) NewSolver() *Solver {
 	n, m := len(s.points), len(s.links)
 	return &Solver{sys: s, factor: s.plan.NewFactor(), values: make([]float64, s.entries), rhs: make([]float64, s.rows), dh: make([]float64, s.rows),
 		loss: make([]float64, m), slope: make([]float64, m), blocked: make([]bool, m), shut: make([]bool, m), live: make([]bool, n),
-		ext: make([]float64, n), lambda: make([]float64, n)}
+		ext: make([]float64, n), atSlope: make([]float64, m), atParam: make([]float64, m), atMinor: make([]float64, s.flat)}
 }
 
 const (

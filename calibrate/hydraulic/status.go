@@ -3,6 +3,8 @@ package hydraulic
 import (
 	"fmt"
 	"math"
+
+	"tapround/calibrate/friction"
 )
 
 // review closes one-way links that run backwards and opens those that would run
@@ -103,6 +105,7 @@ func (v *Solver) finish() {
 			}
 		}
 	}
+	v.tabulate()
 	for i, l := range s.links {
 		if l.Machine != nil && !st.Closed[i] {
 			speed := 1.0
@@ -115,6 +118,32 @@ func (v *Solver) finish() {
 		}
 		if v.blocked[i] && (s.points[l.To].Kind == Outlet || s.points[l.From].Kind == Outlet) && !l.oneWay() {
 			st.Caveats = append(st.Caveats, fmt.Sprintf("pipe %s would draw air in at its outlet: it was taken as passing nothing", l.Name))
+		}
+	}
+}
+
+// tabulate fills what gradients at the solution need.
+func (v *Solver) tabulate() {
+	s := v.sys
+	for i, l := range s.links {
+		if !v.flows(i) {
+			continue
+		}
+		q := v.st.Flow[i]
+		h, d := v.law(i, q)
+		v.atSlope[i] = math.Max(d, leastSlope)
+		if l.Machine != nil {
+			v.atParam[i] = h / v.p.HeadFactor[i]
+			continue
+		}
+		_, _, dp := v.outletHead(i, q)
+		v.atParam[i] = l.Pipe.Loss(q, v.p.LnRough[i], v.c.Viscosity, v.c.Gravity).DParam + dp
+		for k, f := range l.Pipe.Fittings {
+			flat := s.first[i] + k
+			v.atMinor[flat] = 0
+			if q >= 0 || math.IsNaN(f.ReverseK) {
+				v.atMinor[flat], _ = friction.Minor(q, v.kOf(i, k, q), f.Bore, v.c.Gravity)
+			}
 		}
 	}
 }
