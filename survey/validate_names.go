@@ -30,9 +30,9 @@ func Nearest(written string, known []string) string {
 	return name
 }
 
-func plainName(s string) string {
-	return strings.NewReplacer(" ", "", "_", "", "-", "", "\u00a0", "").Replace(strings.ToLower(s))
-}
+var plain = strings.NewReplacer(" ", "", "_", "", "-", "", "\u00a0", "")
+
+func plainName(s string) string { return plain.Replace(strings.ToLower(s)) }
 
 // edits counts the insertions, deletions and replacements that turn a into b.
 func edits(a, b []rune) int {
@@ -62,4 +62,54 @@ func didYouMean(written string, known []string, table string) string {
 		return fmt.Sprintf("did you mean %s? If not, add %s to %s", n, written, table)
 	}
 	return fmt.Sprintf("add %s to %s, or correct the name", written, table)
+}
+
+type named struct {
+	name string
+	at   Source
+}
+
+func listNames[T any](list []T, of func(*T) named) []named {
+	out := make([]named, len(list))
+	for i := range list {
+		out[i] = of(&list[i])
+	}
+	return out
+}
+
+// names tells of names that are hard to tell apart, or that mean two things.
+func (v *validation) names() {
+	tables := [][]named{
+		listNames(v.Points, func(x *Point) named { return named{x.Name, x.Source} }),
+		listNames(v.Pipes, func(x *Pipe) named { return named{x.Name, x.Source} }),
+		listNames(v.Fittings, func(x *Fitting) named { return named{x.Name, x.Source} }),
+		listNames(v.Machines, func(x *Machine) named { return named{x.Name, x.Source} }),
+		listNames(v.Taps, func(x *Tap) named { return named{x.Name, x.Source} }),
+		listNames(v.Gauges, func(x *Gauge) named { return named{x.Name, x.Source} }),
+		listNames(v.Rounds, func(x *Round) named { return named{x.Name, x.Source} }),
+	}
+	for _, t := range tables {
+		spaced, alike := false, false
+		first := map[string]string{}
+		for _, x := range t {
+			n := x.name
+			if strings.ContainsAny(n, " \t\n") && !spaced {
+				spaced = true
+				v.notice(x.at, "", n, "a name with a space in it: lists in the result tables are separated by spaces", "write names without spaces, such as "+strings.Join(strings.Fields(n), "-"))
+			}
+			p := plainName(n)
+			if other, ok := first[p]; ok && other != n && !alike {
+				alike = true
+				v.notice(x.at, "", n, fmt.Sprintf("differs from %s in letter case, spaces or hyphens only; they are two names here", other), "write one name in one way")
+			}
+			if _, ok := first[p]; !ok {
+				first[p] = n
+			}
+		}
+	}
+	for i := range v.Machines {
+		if m := &v.Machines[i]; m.Name != "" && v.pipe[m.Name] != nil {
+			v.fatal(m.Source, "machine", m.Name, fmt.Sprintf("a pipe has the same name (%s)", v.pipe[m.Name].Source), "give one of them another name: results list both in one column")
+		}
+	}
 }

@@ -43,8 +43,12 @@ func ReadFolder(fsys fs.FS) (*survey.Survey, survey.Problems) {
 		if len(files) == 0 {
 			f.absent(sp, others)
 		}
+		rows := 0
 		for _, name := range files {
-			f.file(sp, name)
+			rows += f.file(sp, name)
+		}
+		if rows == 0 && len(files) > 0 && sp.required && !sp.mayBeEmpty && !f.problems.Fatal() {
+			f.tell(files[0], survey.Fatal, "the table has no rows: "+sp.missing, "write its rows")
 		}
 	}
 	f.strangers(specs, found)
@@ -166,8 +170,9 @@ func (f *folder) strangers(specs []spec, found map[string][]string) {
 	}
 }
 
-// file reads one file as a table and records it among the inputs.
-func (f *folder) file(sp spec, name string) {
+// file reads one file as a table, records it among the inputs, and gives the number of
+// its rows.
+func (f *folder) file(sp spec, name string) int {
 	in := survey.Input{File: name}
 	defer func() { f.survey.Inputs = append(f.survey.Inputs, in) }()
 	bytes, sum, err := f.bytes(name)
@@ -180,7 +185,7 @@ func (f *folder) file(sp spec, name string) {
 		why := refusal(err)
 		in.Understood = "not read"
 		f.tell(name, survey.Fatal, why.reason, why.remedy)
-		return
+		return 0
 	}
 	in.Understood = d.encoding
 	sh := &sheet{folder: f, spec: sp, file: name, names: map[string]int{}, notices: map[string]*tally{}}
@@ -191,6 +196,7 @@ func (f *folder) file(sp spec, name string) {
 	sh.finish()
 	in.Used = sh.used()
 	f.problems = append(f.problems, sh.problems...)
+	return in.Rows
 }
 
 // bytes reads a file and its digest. A file that is too large to be a table has no

@@ -36,10 +36,6 @@ func readTaps(sh *sheet) {
 			Source:            r.at,
 		}
 		switch {
-		case x.Pipe != "" && x.Point != "":
-			r.fail("point", x.Point, "the tap states a pipe and a point", "leave one of them empty")
-		case x.Pipe == "" && x.Point == "":
-			r.fail("pipe", "", "the tap states neither a pipe nor a point", "write the pipe and its place on it, or the point it is at")
 		case x.Pipe != "" && x.At == "":
 			r.fail("at", "", "the tap is on a pipe but does not say where", "write its distance from the pipe's from end")
 		case x.Point != "" && x.At != "":

@@ -32,8 +32,9 @@ type spec struct {
 	file     string
 	required bool
 	// missing says what an absent required table leaves out.
-	missing string
-	columns []column
+	missing    string
+	mayBeEmpty bool // no rows are as good as some
+	columns    []column
 	// rowFault is what a cell that cannot be read does to the run.
 	rowFault survey.Severity
 	read     func(*sheet)

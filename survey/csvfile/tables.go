@@ -105,7 +105,7 @@ func tables() []spec {
 			{name: "barometer", kind: measured, dim: unit.Pressure, also: "barometricpressure atmosphericpressure baro"},
 			note,
 		}},
-		{file: "conditions.csv", required: true, missing: "it says the reservoirs' levels and what was drawn off", read: readConditions, columns: []column{
+		{file: "conditions.csv", required: true, missing: "it says the reservoirs' levels and what was drawn off", mayBeEmpty: true, read: readConditions, columns: []column{
 			{name: "round", required: true, also: "roundno roundid run"},
 			{name: "item", required: true},
 			{name: "condition", required: true, also: "state"},
@@ -113,7 +113,7 @@ func tables() []spec {
 			{name: "unit", required: true, also: "units uom"},
 			{name: "sd", kind: byRow, also: "standarddeviation standarduncertainty"},
 		}},
-		{file: readingsFile, required: true, missing: "there is neither readings.csv nor a file in readings/", read: readReadings, rowFault: survey.SetAside, columns: []column{
+		{file: readingsFile, required: true, missing: "there is no reading in readings.csv or the folder readings", read: readReadings, rowFault: survey.SetAside, columns: []column{
 			{name: "round", required: true, also: "roundno roundid run"},
 			{name: "time", kind: moment, also: "datetime timestamp dateandtime"},
 			{name: "tap", required: true, also: "tapping tapno tapid tapname testpoint pressurepoint"},
