@@ -227,6 +227,7 @@ func TestTextIsHarmless(t *testing.T) {
 		"  =1+1":                       "'  =1+1",
 		"＝1+1":                         "'＝1+1",
 		"two\nlines\tand a tab":        "two lines and a tab",
+		"two\u2028lines":               "two lines",
 		"bell\x07 and \x1b[31m colour": "bell  and  [31m colour",
 		"bad \xff byte":                "bad \uFFFD byte",
 		"Höhe, \"quoted\"":             "Höhe, \"quoted\"",
