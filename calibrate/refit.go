@@ -220,3 +220,14 @@ func (f *Fit) Innovation() *mat.VecDense {
 	}
 	return v
 }
+
+// Differences are the whitened differences of all readings, predicted minus measured, at
+// U of sound works and the causes given.
+func (m *Model) Differences(causes []Unknown, u []float64) ([]float64, error) {
+	f, err := m.prepare(causes, Options{Start: u})
+	if err != nil {
+		return nil, err
+	}
+	r := make([]float64, len(m.Obs))
+	return r, f.evaluate(f.U, r)
+}

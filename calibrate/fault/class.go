@@ -14,6 +14,7 @@ const liveOdds = 3.0
 // conclude makes the final fit and sets each accepted cause against its rivals.
 func (d *Diagnosis) conclude(chosen []Cause) error {
 	if len(chosen) == 0 {
+		d.Caveats = append(d.Caveats, d.predictionCaveats()...)
 		return nil
 	}
 	start := d.fitOf(chosen)
@@ -39,6 +40,10 @@ func (d *Diagnosis) conclude(chosen []Cause) error {
 			return err
 		}
 		d.Accepted = append(d.Accepted, a)
+	}
+	d.Caveats = append(d.Caveats, d.predictionCaveats()...)
+	for i, move := range d.robustMove() {
+		d.Accepted[i].Robust = move
 	}
 	sort.SliceStable(d.Accepted, func(i, j int) bool { return d.Accepted[i].T > d.Accepted[j].T })
 	return nil
@@ -102,6 +107,11 @@ func (d *Diagnosis) compare(a *Accepted, rest []Cause) error {
 			a.Others = append(a.Others, v)
 		}
 	}
+	a.Least, a.leaning = d.weakest(a, base.fit)
+	// Ten times the spread takes ln 10 from the evidence of any cause whose size the
+	// readings tell: nothing more being wrong gains by that.
+	wide := math.Exp(mine.score()-math.Ln10-top) / (math.Exp(base.score()-top) + math.Exp(mine.score()-math.Ln10-top))
+	a.SpreadHolds = wide > 0.5
 	byOdds := func(l []Rival) { sort.SliceStable(l, func(i, j int) bool { return l[i].LnOdds < l[j].LnOdds }) }
 	byOdds(a.Class)
 	byOdds(a.Others)

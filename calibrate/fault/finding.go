@@ -58,8 +58,9 @@ func (d *Diagnosis) finding(a *Accepted) survey.Finding {
 }
 
 // grade: proven asks for all of: beyond the family-wise limit (it was accepted),
-// alone, more than nine in ten, and a final fit that the readings do not
-// contradict. An open cause is proven as a loss when nothing but its members can
+// alone, more than nine in ten, a final fit that the readings do not contradict, told
+// by the readings rather than the prior, and a verdict that neither a tenfold spread, nor
+// leaving any one reading out, nor a robust fit turns round. An open cause is proven as a loss when nothing but its members can
 // explain it.
 func (d *Diagnosis) grade(a *Accepted) survey.Grade {
 	p, ok := d.Final.GlobalP()
@@ -72,7 +73,8 @@ func (d *Diagnosis) grade(a *Accepted) survey.Grade {
 	switch {
 	case math.IsNaN(a.Probability):
 		return survey.Hint
-	case whole > 0.9 && a.None < 0.2 && fits && d.Final.Converged && told >= 0.2 && (len(a.Class) > 0 || d.mixUp(a) < 0.1):
+	case whole > 0.9 && a.None < 0.2 && fits && d.Final.Converged && told >= 0.2 && a.SpreadHolds && a.Least > d.Limit*d.Limit/2 &&
+		math.Abs(a.Robust) < 2 && (len(a.Class) > 0 || d.mixUp(a) < 0.1):
 		return survey.Proven
 	case whole > 0.5:
 		return survey.Likely
@@ -311,6 +313,16 @@ func (d *Diagnosis) evidence(a *Accepted, f *survey.Finding) {
 	f.Evidence = append(f.Evidence, fmt.Sprintf(
 		"allowing this cause lowers the sum of squares by %.1f; chance alone reaches %.1f in one sound survey of %s (%d causes tested)",
 		a.T, d.Limit*d.Limit, oneIn(d.set.FalseAlarm), d.Tests))
+	if a.leaning >= 0 && a.Least < d.Limit*d.Limit {
+		h := d.Model.Obs[a.leaning].Head
+		f.Evidence = append(f.Evidence, fmt.Sprintf("it leans on one reading: without that at %s in round %s the drop is %.1f", h.Tap, h.Round, a.Least))
+	}
+	if math.Abs(a.Robust) > 1 {
+		f.Evidence = append(f.Evidence, fmt.Sprintf("a robust fit, which trusts stray readings less, moves it by %.1f standard uncertainties", a.Robust))
+	}
+	if !a.SpreadHolds {
+		f.Evidence = append(f.Evidence, "with faults taken to be ten times as large by nature it would not outweigh chance")
+	}
 	for i, r := range append(append([]Rival(nil), a.Class...), a.Others...) {
 		if i >= 4 {
 			break

@@ -24,6 +24,13 @@ type Accepted struct {
 	Others []Rival
 	// None is the probability of "none of these".
 	None float64
+	// Robust is how far a robust fit moves the cause, in its standard uncertainties.
+	Robust float64
+	// Least is the least T that it keeps when any one reading is left out.
+	Least   float64
+	leaning int // that reading, -1 none
+	// SpreadHolds: it outweighs "nothing more is wrong" with ten times the spread too.
+	SpreadHolds bool
 	// Unknown's place in the final fit.
 	place int
 }
