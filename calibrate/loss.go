@@ -14,7 +14,8 @@ import (
 type Loss struct {
 	Round, FromTap, ToTap string
 	// Measured is what the gauges say, with the uncertainty of gauges and levels
-	// in it; velocity heads are those of the fitted flow.
+	// in it; velocity heads are those of the fitted flow. Gauge and level errors that
+	// were accepted as causes are taken off, smaller fitted ones are not.
 	Measured Estimate
 	// Expected is what sound works lose at the fitted flows; its SD is the scatter
 	// of sound items and the uncertainty of the flow.
@@ -95,10 +96,26 @@ func (f *Fit) measuredTotals(round int) map[int]tapHead {
 			velocity = 0
 		}
 		best[o.tap] = u
-		out[o.tap] = tapHead{value: h.Value + velocity, own: h.Own, gauge: o.gauge,
+		out[o.tap] = tapHead{value: h.Value + velocity - f.blamed(o), own: h.Own, gauge: o.gauge,
 			perGauge: h.PerGauge * h.GaugeSD, tapSD: h.PerTap * h.TapSD, baro: h.BarometerSD}
 	}
 	return out
+}
+
+// blamed is what accepted causes of gauge or level falsify a head by, m.
+func (f *Fit) blamed(o Observation) float64 {
+	sum := 0.0
+	for c := len(f.Model.Unknowns); c < len(f.Unknowns); c++ {
+		for _, t := range f.Unknowns[c].Targets {
+			switch {
+			case t.class == onOffset && t.index == o.gauge:
+				sum += o.Head.PerGauge * t.Weight * f.Theta(c)
+			case t.class == onTapLevel && t.index == o.tap:
+				sum += o.Head.PerTap * t.Weight * f.Theta(c)
+			}
+		}
+	}
+	return sum
 }
 
 func (f *Fit) lossOn(r int, s Stretch, a, b tapHead) Loss {

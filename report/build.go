@@ -35,7 +35,7 @@ func New(in Input) *Result {
 		r.Heads = headRows(in, nil)
 		return r
 	}
-	r.Findings = d.Findings()
+	r.Findings = d.Findings() // numbers them, which costs need
 	r.Alerts = append(append([]survey.Alert(nil), in.Alerts...), d.Misreadings()...)
 	r.Fit = fitFacts(d)
 	r.Heads = headRows(in, d.Final)
@@ -44,6 +44,7 @@ func New(in Input) *Result {
 	r.Parameters = parameterRows(d.Final)
 	r.Residuals = differenceRows(d.Final)
 	r.Losses = lossRows(d.Final)
+	r.Costs = costs(d)
 	routes := in.Routes
 	if routes == nil {
 		routes = d.Model.MainRoutes(3)
@@ -233,6 +234,21 @@ func stamp(t time.Time) string {
 		return ""
 	}
 	return t.Format(time.RFC3339)
+}
+
+// costs are what the findings of lost head cost, by their IDs.
+func costs(d *fault.Diagnosis) []Cost {
+	var out []Cost
+	for i := range d.Accepted {
+		a := &d.Accepted[i]
+		c, ok := d.CostOf(a)
+		if !ok {
+			continue
+		}
+		out = append(out, Cost{Finding: c.Finding, Power: known(c.Power), Energy: known(c.Energy), Money: known(c.Money),
+			Currency: d.Model.Survey.Info.Cost.Currency, Basis: c.Basis})
+	}
+	return out
 }
 
 func cautions(fs []survey.Finding) []string {

@@ -21,6 +21,7 @@ func (d *Diagnosis) Findings() []survey.Finding {
 			continue // named among the readings, see Misreadings
 		}
 		out = append(out, d.finding(a))
+		a.id = fmt.Sprintf("F%d", len(out)) // as numbered below: accepted causes come first
 	}
 	out = append(out, d.unitFindings()...)
 	out = append(out, d.hints()...)
@@ -48,6 +49,9 @@ func (d *Diagnosis) finding(a *Accepted) survey.Finding {
 		f.CannotBeToldFrom = append(f.CannotBeToldFrom, r.Name())
 	}
 	f.Grade = d.grade(a)
+	if len(a.Class) > 0 {
+		f.Probability = survey.Some(a.whole())
+	}
 	d.evidence(a, &f)
 	if len(a.Class) > 0 && lossKind(a.Kind) {
 		d.open(a, &f)
@@ -65,10 +69,7 @@ func (d *Diagnosis) finding(a *Accepted) survey.Finding {
 func (d *Diagnosis) grade(a *Accepted) survey.Grade {
 	p, ok := d.Final.GlobalP()
 	fits := !ok || p > 0.01
-	whole := a.Probability
-	for _, r := range a.Class {
-		whole += r.Probability
-	}
+	whole := a.whole()
 	told := d.Final.Told(a.place)
 	switch {
 	case math.IsNaN(a.Probability):
@@ -80,6 +81,15 @@ func (d *Diagnosis) grade(a *Accepted) survey.Grade {
 		return survey.Likely
 	}
 	return survey.Hint
+}
+
+// whole is the probability that the cause or one of its class is there.
+func (a *Accepted) whole() float64 {
+	p := a.Probability
+	for _, r := range a.Class {
+		p += r.Probability
+	}
+	return math.Min(1, p)
 }
 
 // mixUp is the greatest chance that a rival of the same signature won by luck.
@@ -219,11 +229,7 @@ func (d *Diagnosis) excess(a *Accepted) []survey.AtRound {
 // open turns a finding into an open cause between the taps around it.
 func (d *Diagnosis) open(a *Accepted, f *survey.Finding) {
 	f.CannotBeToldFrom = append([]string{a.Name()}, f.CannotBeToldFrom...)
-	whole := a.Probability
-	for _, r := range a.Class {
-		whole += r.Probability
-	}
-	f.Kind, f.Probability = survey.CauseOpen, survey.Some(math.Min(1, whole))
+	f.Kind = survey.CauseOpen
 	from, to := d.around(a)
 	f.Item = from + ".." + to
 	// The item's own quantity has no meaning for a class: what is determined is

@@ -25,6 +25,7 @@ type Next struct {
 	// m3/s); Against is the rival that the reading parts best from it.
 	Likeliest, Against string
 	Difference         float64
+	OfFlow             bool // it is a flow, not a head
 	// Gain is the expected drop of entropy over the causes, in nats (Lindley 1956).
 	Gain float64
 	// Settles is the chance that the reading puts the true one of the two first.
@@ -48,6 +49,7 @@ type place struct {
 	weights []float64
 	noise   float64
 	link    int
+	flow    bool // m3/s instead of m
 }
 
 // NextReadings ranks, for every accepted cause that has rivals, the readings that would
@@ -200,7 +202,7 @@ func (d *Diagnosis) places(a *Accepted) []place {
 		if l == main || !d.near(a, p) {
 			continue
 		}
-		out = append(out, place{words: "a second flow measurement in " + p.Name, probes: []hydraulic.Probe{{Point: -1, Link: l, View: hydraulic.Flow, Depth: nan}}, weights: one,
+		out = append(out, place{flow: true, words: "the flow in " + p.Name, probes: []hydraulic.Probe{{Point: -1, Link: l, View: hydraulic.Flow, Depth: nan}}, weights: one,
 			noise: 0.02 * math.Abs(d.Final.FlowOf(d.busiestRound(), l)), link: l})
 	}
 	return out
@@ -227,7 +229,7 @@ func judge(worlds []*calibrate.WhatIf, p []float64, names []string, at place) (N
 		}
 		mu[k], sd[k] = e.Value, math.Hypot(e.SD, at.noise)
 	}
-	n := Next{Where: at.words, Gain: entropyDrop(p, mu, sd), Likeliest: names[0]}
+	n := Next{Where: at.words, Gain: entropyDrop(p, mu, sd), Likeliest: names[0], OfFlow: at.flow}
 	// The likeliest is the first: classes are sorted by their odds.
 	best := -1.0
 	for k := 1; k < len(worlds); k++ {
@@ -284,10 +286,11 @@ func (n Next) Sentence() string {
 	if n.Flow > 0 && n.Scale > 0 {
 		at += fmt.Sprintf(" (about %s L/s in the suspected pipe)", unit.Significant(1e3*n.Flow, 2))
 	}
-	diff := unit.Significant(math.Abs(n.Difference), 2) + " m"
-	if len(n.Where) > 8 && n.Where[:8] == "a second" {
-		diff = unit.Significant(1e3*math.Abs(n.Difference), 2) + " L/s"
+	do, diff := "Read at", unit.Significant(math.Abs(n.Difference), 2)+" m"
+	if n.OfFlow {
+		do, diff = "Measure", unit.Significant(1e3*math.Abs(n.Difference), 2)+" L/s"
 	}
-	return fmt.Sprintf("Read at %s %s: %q and %q differ there by %s, and the reading parts the two with a probability of %.0f %%.",
-		n.Where, at, n.Likeliest, n.Against, diff, math.Floor(100*n.Settles))
+	// Never a round hundred: the works may hold what no model does.
+	return fmt.Sprintf("%s %s %s: %q and %q differ there by %s, and the reading parts the two with a probability of %.0f %%.",
+		do, n.Where, at, n.Likeliest, n.Against, diff, math.Min(99, 100*n.Settles))
 }

@@ -31,8 +31,8 @@ type Accepted struct {
 	leaning int // that reading, -1 none
 	// SpreadHolds: it outweighs "nothing more is wrong" with ten times the spread too.
 	SpreadHolds bool
-	// Unknown's place in the final fit.
-	place int
+	place       int    // of its unknown in the final fit
+	id          string // of its finding, once Findings has numbered them
 }
 
 // Rival is another cause in the place of an accepted one.

@@ -187,12 +187,13 @@ func (d *Diagnosis) weakest(a *Accepted, base *calibrate.Fit) (least float64, re
 
 // Cost is what a finding of lost head costs while it stands.
 type Cost struct {
-	Item   string
-	Kind   survey.FindingKind
-	Power  float64 // W
-	Energy float64 // J a year
-	Money  float64 // a year, in the survey's currency
-	Basis  string
+	Finding string // its ID, once Findings has numbered them
+	Item    string
+	Kind    survey.FindingKind
+	Power   float64 // W
+	Energy  float64 // J a year
+	Money   float64 // a year, in the survey's currency
+	Basis   string
 }
 
 // CostOf turns the excess head of a finding into money where the survey states price,
@@ -215,7 +216,7 @@ func (d *Diagnosis) CostOf(a *Accepted) (Cost, bool) {
 		q = c.FlowExceeded.V
 		at = "the flow that survey.csv charges"
 	}
-	out := Cost{Item: a.Item, Kind: a.Kind}
+	out := Cost{Finding: a.id, Item: a.Item, Kind: a.Kind}
 	out.Power = d.Model.Rounds[round].Density * d.Final.Conditions(round).Gravity * q * h / c.PumpEfficiency.V
 	out.Energy = out.Power * c.HoursPerYear.V * 3600
 	out.Money = out.Energy / 3.6e6 * c.EnergyPrice.V

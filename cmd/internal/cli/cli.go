@@ -108,7 +108,7 @@ decide what is done on site.`,
 	}
 	root.SetVersionTemplate("tapround {{.Version}}\n")
 	root.CompletionOptions.HiddenDefaultCmd = true
-	root.AddCommand(newDemo(e), newCheck(e), newHeads(e), newReconcile(e), newDraw(e))
+	root.AddCommand(newDemo(e), newCheck(e), newHeads(e), newReconcile(e), newNext(e), newDraw(e))
 	return root
 }
 

@@ -48,20 +48,40 @@ func readSurvey(folder fs.FS) data {
 }
 
 // reconcile goes the whole way: tables, readings, corrected readings, heads, fit,
-// findings, report.
-func reconcile(d data) (*report.Result, *fault.Diagnosis, error) {
+// findings, report. places name a route to draw; nil: the main ones.
+func reconcile(d data, places []string) (*report.Result, *fault.Diagnosis, error) {
 	model, err := calibrate.New(d.survey, d.heads, calibrate.DefaultPriors())
+	if err != nil {
+		return nil, nil, cannot(err)
+	}
+	routes, err := routesOf(model, places)
 	if err != nil {
 		return nil, nil, err
 	}
 	diagnosis, err := fault.Diagnose(model, fault.DefaultSettings(d.survey))
 	if err != nil {
-		return nil, nil, err
+		return nil, nil, cannot(err)
 	}
 	return report.New(report.Input{
 		Tool: report.Tool{Name: "tapround", Version: version()}, Survey: d.survey, Corrected: d.corrected, Heads: d.heads,
-		Diagnosis: diagnosis, Problems: d.problems, Alerts: d.alerts, Settings: settings(d.survey, model, diagnosis),
+		Diagnosis: diagnosis, Problems: d.problems, Alerts: d.alerts, Settings: settings(d.survey, model, diagnosis), Routes: routes,
 	}), diagnosis, nil
+}
+
+func routesOf(m *calibrate.Model, places []string) ([]calibrate.Way, error) {
+	if len(places) == 0 {
+		return nil, nil
+	}
+	w, err := m.RouteThrough(places)
+	if err != nil {
+		return nil, &failure{code: exitUsage, err: fmt.Errorf("--route: %w", err)}
+	}
+	return []calibrate.Way{w}, nil
+}
+
+// cannot marks an error of the model as "could not be computed".
+func cannot(err error) error {
+	return &failure{code: exitCannot, err: err, hint: "tapround check shows what was read; the message says which place or round makes it impossible"}
 }
 
 // openFolder gives the survey folder as a file system.

@@ -99,8 +99,7 @@ heads.csv too. It fits nothing, so total heads stay empty: they need the flow.`,
 }
 
 func newDraw(e *env) *cobra.Command {
-	var out, format, round string
-	var route []string
+	var o drawOptions
 	c := &cobra.Command{
 		Use:   "draw FOLDER",
 		Short: "draw the grade lines along a route",
@@ -111,12 +110,13 @@ picture for each round.`,
 		Example: "  tapround draw surveys/2026-03-harrowgill --route R1,N9 --round E --format svg --out /tmp/pictures",
 		Args:    cobra.ExactArgs(1),
 		RunE: func(_ *cobra.Command, args []string) error {
-			return runDraw(e, args[0], drawOptions{out: out, format: format, round: round, route: route})
+			return runDraw(e, args[0], o)
 		},
 	}
-	c.Flags().StringSliceVar(&route, "route", nil, "points or taps the route passes, in order, separated by commas")
-	c.Flags().StringVar(&round, "round", "", "one round only (default all)")
-	c.Flags().StringVar(&format, "format", "svg", "svg, png or pdf")
-	c.Flags().StringVar(&out, "out", "", "folder for the pictures (default "+filepath.Join("FOLDER", "results")+")")
+	c.Flags().StringSliceVar(&o.route, "route", nil, "points or taps the route passes, in order, separated by commas")
+	c.Flags().StringVar(&o.round, "round", "", "one round only (default all)")
+	c.Flags().StringVar(&o.format, "format", "svg", "svg, png or pdf")
+	c.Flags().BoolVar(&o.quiet, "quiet", false, "print nothing but errors")
+	c.Flags().StringVar(&o.out, "out", "", "folder for the pictures (default "+filepath.Join("FOLDER", "results")+")")
 	return c
 }

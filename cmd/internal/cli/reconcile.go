@@ -50,9 +50,9 @@ func runReconcile(e *env, folder string, o reconcileOptions) error {
 	if d.problems.Fatal() {
 		return refuse(e, d.problems)
 	}
-	result, _, err := reconcile(d)
+	result, _, err := reconcile(d, nil)
 	if err != nil {
-		return &failure{code: exitCannot, err: err, hint: "tapround check " + folder + " shows what was read; the message above says which data would make it computable"}
+		return err
 	}
 	if o.out == "" {
 		o.out = filepath.Join(folder, "results")

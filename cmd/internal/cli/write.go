@@ -14,11 +14,7 @@ func writeFiles(dir string, files map[string][]byte) error {
 	if err := os.MkdirAll(dir, 0o755); err != nil {
 		return cannotWrite(dir, err)
 	}
-	names := make([]string, 0, len(files))
-	for name := range files {
-		names = append(names, name)
-	}
-	sort.Strings(names)
+	names := sortedNames(files)
 	temps := map[string]string{}
 	defer func() {
 		for _, t := range temps {
@@ -40,6 +36,15 @@ func writeFiles(dir string, files map[string][]byte) error {
 		}
 	}
 	return nil
+}
+
+func sortedNames(files map[string][]byte) []string {
+	names := make([]string, 0, len(files))
+	for name := range files {
+		names = append(names, name)
+	}
+	sort.Strings(names)
+	return names
 }
 
 func writeBeside(path string, data []byte) (temp string, err error) {
