@@ -38,6 +38,7 @@ type Fit struct {
 	cov    *mat.SymDense
 	work   *Workspace
 	trial  *Workspace
+	sound  []lineReader // by round: the works with nothing wrong
 }
 
 // Options of one fit.

@@ -26,33 +26,45 @@ func (f *Fit) alongWith(w Way, round int, taps bool) []Vertex {
 	m := f.Model
 	var out []Vertex
 	x := 0.0
-	expected := math.NaN()
-	c := f.Conditions(round)
+	fitted := lineReader{m, f.work.solvers[round], f.State(round)}
+	sound := f.soundWorks(round)
 	for _, leg := range w.Legs {
 		length := m.lengthOf(leg.Link)
-		stops := m.stops(leg, taps)
-		q := f.FlowOf(round, leg.Link)
-		var before float64
-		for i, s := range stops {
-			v := Vertex{X: x + math.Abs(s.at-clamp(leg.X1, 0, length)), Link: leg.Link, At: s.at}
-			v.Total = f.headAt(round, leg, s, hydraulic.Total)
-			v.Piezometric = f.headAt(round, leg, s, hydraulic.Piezometric)
-			v.Ground = m.groundAt(leg.Link, s.at)
-			if math.IsNaN(expected) {
-				expected = v.Total
-			}
-			if i > 0 {
-				h, _, _ := m.LossOf(Leg{leg.Link, before, s.probe}, q, conditionsOf{c.Viscosity, c.Gravity, c.Speed[leg.Link]})
-				expected -= h
-			}
-			v.ExpectedTotal = expected
-			v.ExpectedPiezometric = expected - (v.Total - v.Piezometric)
-			before = s.probe
-			out = append(out, v)
+		for _, s := range m.stops(leg, taps) {
+			out = append(out, Vertex{X: x + math.Abs(s.at-clamp(leg.X1, 0, length)), Link: leg.Link, At: s.at,
+				Total: fitted.head(leg, s, hydraulic.Total), Piezometric: fitted.head(leg, s, hydraulic.Piezometric),
+				ExpectedTotal: sound.head(leg, s, hydraulic.Total), ExpectedPiezometric: sound.head(leg, s, hydraulic.Piezometric),
+				Ground: m.groundAt(leg.Link, s.at)})
 		}
 		x += length
 	}
 	return out
+}
+
+// soundWorks is the round with every item at its expected value and the fitted levels
+// and draw-offs: what the works would show if nothing on them were wrong. Where that has
+// no solution the lines stay empty.
+func (f *Fit) soundWorks(round int) lineReader {
+	if f.sound == nil {
+		f.sound = make([]lineReader, len(f.Model.Rounds))
+	}
+	if f.sound[round].solver == nil {
+		v := f.Model.System.NewSolver()
+		c := f.Conditions(round)
+		st, err := v.Solve(&f.Model.base, &c, nil)
+		if err != nil {
+			st = nil
+		}
+		f.sound[round] = lineReader{f.Model, v, st}
+	}
+	return f.sound[round]
+}
+
+// lineReader reads heads along pipes from one solved state; nil: there is none.
+type lineReader struct {
+	m      *Model
+	solver *hydraulic.Solver
+	state  *hydraulic.State
 }
 
 // stop is one chainage of a link where the lines bend or step. probe is where the
@@ -90,20 +102,23 @@ func (m *Model) stops(leg Leg, taps bool) []stop {
 	return out
 }
 
-// headAt reads a head at a stop; at the ends of a link that of the point.
-func (f *Fit) headAt(round int, leg Leg, s stop, v hydraulic.View) float64 {
-	from, to := f.Model.endsOf(leg.Link)
-	pipe := f.Model.System.Link(leg.Link).Pipe != nil
+// head reads a head at a stop; at the ends of a link the total head is that of the point.
+func (r lineReader) head(leg Leg, s stop, v hydraulic.View) float64 {
+	if r.state == nil {
+		return math.NaN()
+	}
+	from, to := r.m.endsOf(leg.Link)
+	pipe := r.m.System.Link(leg.Link).Pipe != nil
 	switch {
 	case math.IsInf(s.probe, -1) && (!pipe || v == hydraulic.Total):
-		return f.State(round).Head[from]
+		return r.state.Head[from]
 	case math.IsInf(s.probe, 1) && (!pipe || v == hydraulic.Total):
-		return f.State(round).Head[to]
+		return r.state.Head[to]
 	case !pipe:
 		return math.NaN()
 	}
-	at := clamp(s.probe, 0, math.Nextafter(f.Model.lengthOf(leg.Link), math.Inf(1)))
-	return f.work.solvers[round].Read(hydraulic.Probe{Point: -1, Link: leg.Link, At: at, View: v, Depth: math.NaN()})
+	at := clamp(s.probe, 0, math.Nextafter(r.m.lengthOf(leg.Link), math.Inf(1)))
+	return r.solver.Read(hydraulic.Probe{Point: -1, Link: leg.Link, At: at, View: v, Depth: math.NaN()})
 }
 
 // groundAt is the pipe's level at a chainage: by levels.csv and the levels of its

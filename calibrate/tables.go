@@ -59,23 +59,11 @@ func (f *Fit) Whole(k int) (value, low, high float64) {
 	return x.Expected + theta, x.Expected + theta - s, x.Expected + theta + s
 }
 
-// PipeLine is the grade lines along one pipe in a round: at its ends, both sides
-// of each fitting, and its taps. The expected line starts from the fitted head at
-// the end where the water enters.
+// PipeLine is the grade lines along one pipe in a round: at its ends, both sides of each
+// fitting, and its taps.
 func (f *Fit) PipeLine(round, link int) []Vertex {
-	leg := Leg{link, math.Inf(-1), math.Inf(1)}
 	from, to := f.Model.endsOf(link)
-	points := []int{from, to}
-	if f.FlowOf(round, link) < 0 {
-		leg, points = Leg{link, math.Inf(1), math.Inf(-1)}, []int{to, from}
-	}
-	vs := f.alongWith(Way{Legs: []Leg{leg}, Points: points}, round, true)
-	if leg.X1 > leg.X2 {
-		for i, j := 0, len(vs)-1; i < j; i, j = i+1, j-1 {
-			vs[i], vs[j] = vs[j], vs[i]
-		}
-	}
-	return vs
+	return f.alongWith(Way{Legs: []Leg{{link, math.Inf(-1), math.Inf(1)}}, Points: []int{from, to}}, round, true)
 }
 
 // HeadsAt gives velocity head and piezometric head at a tap in a round by the fit;

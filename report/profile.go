@@ -55,7 +55,7 @@ func profileOf(f *calibrate.Fit, findings []survey.Finding, w calibrate.Way, rou
 			p.Devices = append(p.Devices, Place{Name: mc.Name, Kind: string(mc.Kind), X: at})
 		}
 	}
-	p.Measured = measured(f, w, round)
+	p.Measured = measured(f, findings, w, round)
 	p.Suspect = suspects(m, findings, w)
 	p.BelowAir = belowAir(vs)
 	return p
@@ -82,7 +82,7 @@ func lines(vs []calibrate.Vertex, of func(calibrate.Vertex) float64) [][]XY {
 	return out
 }
 
-func measured(f *calibrate.Fit, w calibrate.Way, round int) []ProfileReading {
+func measured(f *calibrate.Fit, findings []survey.Finding, w calibrate.Way, round int) []ProfileReading {
 	m := f.Model
 	var out []ProfileReading
 	for _, o := range m.Obs {
@@ -102,9 +102,22 @@ func measured(f *calibrate.Fit, w calibrate.Way, round int) []ProfileReading {
 			text += r.Written + " " + r.Unit
 		}
 		out = append(out, ProfileReading{Tap: h.Tap, Gauge: h.Gauge, X: x, Y: h.Value, Bar: 1.96 * h.U(),
-			Total: h.Quantity == survey.LocalTotalHead, Text: text})
+			Total: h.Quantity == survey.LocalTotalHead, Text: text, Note: blameOf(findings, h)})
 	}
 	return out
+}
+
+// blameOf is the finding that says a reading's gauge or level is wrong.
+func blameOf(findings []survey.Finding, h survey.Head) string {
+	for _, f := range findings {
+		if f.Grade == survey.Hint {
+			continue
+		}
+		if (f.Kind == survey.LevelWrong && f.Item == h.Tap) || (f.Kind == survey.GaugeOff && f.Item == h.Gauge) {
+			return f.ID
+		}
+	}
+	return ""
 }
 
 // suspects marks the stretches that findings of lost head speak of.
