@@ -9,8 +9,12 @@
 // # References
 //
 //	[CW]    C. F. Colebrook, J. Inst. Civ. Eng. 11 (1939) 133: 1/sqrt f = -2 log10(k/(3.7 D) + 2.51/(Re sqrt f))
-//	[SJ]    P. K. Swamee, A. K. Jain, J. Hydraul. Div. ASCE 102 (1976) 657: starting value
+//	[Cl]    D. Clamond, Ind. Eng. Chem. Res. 48 (2009) 3665: fourth-order steps settle [CW] in two logarithms
+//	[Ho]    A. S. Householder, The Numerical Treatment of a Single Nonlinear Equation (1970), sec. 4.4: the step
 //	[HW]    G. S. Williams, A. Hazen, Hydraulic Tables (1905): V = 0.8492 C R^0.63 S^0.54 in SI
+//	[PK]    L. Prandtl and T. von Karman's logarithmic velocity law, as in H. Schlichting, Boundary-Layer Theory, ch. 20
+//	[BC]    J.-C. de Borda (1766) and L. Carnot's loss at a sudden enlargement, any text
+//	[Cr]    Crane Co., Technical Paper 410: sudden contraction, 0.5 (1 - beta^2)
 //	[FC]    F. N. Fritsch, R. E. Carlson, SIAM J. Numer. Anal. 17 (1980) 238
 //	[FB]    F. N. Fritsch, J. Butland, SIAM J. Sci. Stat. Comput. 5 (1984) 300
 package friction
@@ -35,39 +39,72 @@ const (
 // and d ln f / d ln k.
 type Factor struct{ F, DLnRe, DLnK float64 }
 
-// Colebrook is the Colebrook-White factor [CW] at Reynolds number re > 0 and
-// relative roughness rel = k/D >= 0, to machine precision: Newton on x = 1/sqrt f,
-// which the near-linear equation takes in three steps from [SJ].
+// roughest is the relative roughness k/D up to which [CW] is used as it stands. It
+// was made for k/D up to 0.05 and has a pole at 3.7; a search that tries an absurd
+// roughness must still find a loss that is finite and rises, so from here on ln f
+// goes on in a straight line over ln k.
+const roughest = 1.0
+
+// Colebrook is the Colebrook-White factor [CW] at Reynolds number re (turbulent:
+// from some 2,000 up) and relative roughness rel = k/D >= 0, to machine precision.
 //
-// With A = k/(3.7 D), B = 2.51 x/Re and c = 2/ln 10,
+// With x = 1/sqrt f, A = k/(3.7 D), B = 2.51 x/Re and c = 2/ln 10,
 //
 //	d ln f/d ln k = 2cA/((A+B)x + cB),  d ln f/d ln Re = -2cB/((A+B)x + cB)
 func Colebrook(re, rel float64) Factor {
+	f, _ := turbulent(re, rel)
+	return f
+}
+
+// turbulent is Colebrook together with the mixed derivative d2 ln f/(d ln Re d ln k).
+func turbulent(re, rel float64) (f Factor, cross float64) {
 	const c = 2 / math.Ln10
-	a, b := rel/3.7, 2.51/re
-	x := -2 * math.Log10(a+5.74/math.Pow(re, 0.9))
-	if !(x > 0.5) {
-		x = 0.5 // beyond any pipe: a wall rougher than the bore
+	a, b := math.Min(rel, roughest)/3.7, 2.51/re
+	x := root(a, b)
+	bx := b * x
+	den := (a+bx)*x + c*bx
+	f = Factor{F: 1 / (x * x), DLnRe: -2 * c * bx / den, DLnK: 2 * c * a / den}
+	// By ln k: x moves by dx, bx with it, a by itself.
+	dx := -x * f.DLnK / 2
+	db := b * dx
+	dden := (a+db)*x + (a+bx)*dx + c*db
+	cross = -2 * c * (db*den - bx*dden) / (den * den)
+	if rel > roughest {
+		reach := math.Log(rel / roughest)
+		f.F *= math.Exp(f.DLnK * reach)
+		f.DLnRe += cross * reach
 	}
-	for i := 0; i < 8; i++ {
+	return f, cross
+}
+
+// root solves g(x) = x + c ln(a + bx) = 0 for x = 1/sqrt f. g is so nearly straight
+// that steps of fourth order [Ho][Cl] from a start with x = 7 under the logarithm
+// reach rounding after one or two; what a step under 1e-4 leaves is some 1e-16.
+func root(a, b float64) float64 {
+	const (
+		c     = 2 / math.Ln10
+		steps = 8 // two are enough in turbulent flow
+	)
+	x := math.Max(0.1, -c*math.Log(a+7*b))
+	for range steps {
 		arg := a + b*x
+		w := b / arg
 		g := x + c*math.Log(arg)
-		step := g / (1 + c*b/arg)
+		d1, d2, d3 := 1+c*w, -c*w*w, 2*c*w*w*w
+		step := g * (d1*d1 - g*d2/2) / (d1*d1*d1 - g*d1*d2 + g*g*d3/6)
 		x -= step
-		if math.Abs(step) < 1e-15*x {
+		if math.Abs(step) < 1e-4*x {
 			break
 		}
 	}
-	bx := b * x
-	den := (a+bx)*x + c*bx
-	return Factor{F: 1 / (x * x), DLnRe: -2 * c * bx / den, DLnK: 2 * c * a / den}
+	return x
 }
 
-// DarcyFactor is the friction factor at any Reynolds number: 64/Re below 2,000,
-// Colebrook-White above 4,000, and between them the cubic Hermite curve of ln f
-// over ln Re that has the values and slopes of both, so that f and its
-// derivatives are continuous. The slope of the curve never falls below -1, so the
-// loss rises with the flow throughout.
+// DarcyFactor is the friction factor at any Reynolds number re > 0: 64/Re below
+// 2,000, Colebrook-White above 4,000, and between them the cubic Hermite curve of
+// ln f over ln Re that has the values and slopes of both, so that f and its
+// derivatives are continuous. f at 4,000 is never below that at 2,000, so the curve's
+// slope is least at its ends and never under -1: the loss rises with the flow.
 func DarcyFactor(re, rel float64) Factor {
 	if re <= ReLaminar {
 		return Factor{F: 64 / re, DLnRe: -1}
@@ -75,7 +112,7 @@ func DarcyFactor(re, rel float64) Factor {
 	if re >= ReTurbulent {
 		return Colebrook(re, rel)
 	}
-	top := Colebrook(ReTurbulent, rel)
+	top, cross := turbulent(ReTurbulent, rel)
 	span := math.Log(ReTurbulent / ReLaminar)
 	t := math.Log(re/ReLaminar) / span
 	h00, h10, h01, h11 := hermite(t)
@@ -84,20 +121,7 @@ func DarcyFactor(re, rel float64) Factor {
 	lnF := h00*y0 - h10*span + h01*y1 + h11*span*top.DLnRe
 	slope := (d00*y0+d01*y1)/span - d10 + d11*top.DLnRe
 	// ln k moves the value and the slope at the turbulent end.
-	return Factor{F: math.Exp(lnF), DLnRe: slope, DLnK: h01*top.DLnK + h11*span*top.cross(rel)}
-}
-
-// cross is d(d ln f/d ln Re)/d ln k of Colebrook-White at the joint, by the chain
-// rule on s = -2cB/((A+B)x + cB).
-func (f Factor) cross(rel float64) float64 {
-	const c = 2 / math.Ln10
-	x := 1 / math.Sqrt(f.F)
-	a, b := rel/3.7, 2.51*x/ReTurbulent
-	dx := -x * f.DLnK / 2 // d x / d ln k
-	da, db := a, b*dx/x
-	den := (a+b)*x + c*b
-	dden := (da+db)*x + (a+b)*dx + c*db
-	return -2 * c * (db*den - b*dden) / (den * den)
+	return Factor{F: math.Exp(lnF), DLnRe: slope, DLnK: h01*top.DLnK + h11*span*cross}
 }
 
 func hermite(t float64) (h00, h10, h01, h11 float64) {
