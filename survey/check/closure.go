@@ -163,13 +163,18 @@ func (v *view) doesNotClose(r round, m mean, worst []suspect) survey.Alert {
 	return a
 }
 
-// fineElsewhere names a tap at which the gauge of a suspect tap agrees with the rest.
+// fineElsewhere names a tap at which the gauge of a suspect tap agrees with the rest,
+// the suspect left out.
 func (m mean) fineElsewhere(v *view, x suspect) string {
 	if x.tap == "" || x.gauge == "" {
 		return ""
 	}
-	for i, w := range m.ws {
-		if w.reservoir == "" && w.head.Gauge == x.gauge && w.head.Tap != x.tap && v.within(m, i) {
+	rest, ok := meanOf(without(m.ws, x.members))
+	if !ok {
+		return ""
+	}
+	for i, w := range rest.ws {
+		if w.reservoir == "" && w.head.Gauge == x.gauge && v.within(rest, i) {
 			return w.head.Tap
 		}
 	}

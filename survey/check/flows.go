@@ -23,8 +23,8 @@ func (f flow) sign(limit float64) float64 {
 
 // flows gives the flow of every pipe and machine of a round that the data settle: a
 // metered pipe, one that is shut or at rest, and, from junction to junction, the last
-// unknown of those that meet there. Uncertainties are added as if they were
-// independent.
+// unknown of those that meet there, the surest first. Uncertainties are added as if they
+// were independent.
 func (v *view) flows(r round) map[string]flow {
 	known := v.metered(r)
 	shut := map[string]bool{}
@@ -51,35 +51,36 @@ func (v *view) flows(r round) map[string]flow {
 	for _, m := range v.s.Machines {
 		link(m.Name, m.From, m.To, r.force.Stopped[m.Name])
 	}
-	for changed := true; changed; {
-		changed = false
+	for {
+		var best end
+		var bestFlow flow
+		found := false
 		for _, p := range v.s.Points {
-			if p.Kind != survey.Junction {
-				continue
-			}
 			drawn, ok := drawnAt(r.force, p.Name)
-			if !ok {
+			if p.Kind != survey.Junction || !ok {
 				continue
 			}
-			var open *end
+			var open end
 			unknown := 0
 			sum, variance := -drawn.q, drawn.u*drawn.u
-			for i, e := range at[p.Name] {
+			for _, e := range at[p.Name] {
 				if f, ok := known[e.link]; ok {
 					sum += e.sign * f.q
 					variance += f.u * f.u
 				} else {
-					open = &at[p.Name][i]
+					open = e
 					unknown++
 				}
 			}
-			if unknown == 1 {
-				known[open.link] = flow{-sum * open.sign, math.Sqrt(variance)}
-				changed = true
+			if f := (flow{-sum * open.sign, math.Sqrt(variance)}); unknown == 1 && (!found || f.u < bestFlow.u) {
+				best, bestFlow, found = open, f, true
 			}
 		}
+		if !found {
+			return known
+		}
+		known[best.link] = bestFlow
 	}
-	return known
 }
 
 // metered gives the flow of pipes with a meter, the weighted mean of several.

@@ -14,7 +14,7 @@ import (
 
 // strayUnits looks at readings taken while water flows. What lies outside all other
 // readings of its part of the system, by more than those span and by more than its own
-// uncertainty explains, and comes to lie among them in another unit, is named. Parts are
+// uncertainty explains, and comes to lie with them in another unit, is named. Parts are
 // divided at machines, for the head steps there. A loss can put a head below the others
 // and a pump above them; unless it stands above every reservoir that feeds it, only the
 // unit on the gauge's own face is tried.
@@ -36,12 +36,13 @@ func strayUnits(v *view) []survey.Alert {
 			}
 			feed, fed := v.feed(r, v.taps[h.Tap])
 			impossible := fed && h.Value-feed.Value.V > v.limits.amongOthers.value*h.U()
-			margin := v.limits.apart.value * h.U()
+			// The last tap of a line rightly lies somewhat outside the others.
+			margin := high - low + v.limits.apart.value*h.U()
 			fits := v.fitting(r, h, func(value float64) float64 {
-				if value < low-margin || value > high+margin {
+				if value < low-margin || value > high+margin || impossible && value > feed.Value.V+v.limits.apart.value*h.U() {
 					return math.Inf(1)
 				}
-				return math.Abs(value - (low+high)/2)
+				return math.Max(0, math.Max(low-value, value-high))
 			})
 			if len(fits) > 0 && (fits[0].face || impossible && v.convincing(fits[0])) {
 				out = append(out, v.unitAlert(r, h, fits, fmt.Sprintf("the %d others of the round lie between %.2f m and %.2f m", n, low, high), v.limits.amongOthers.String()))

@@ -1,7 +1,9 @@
 package check
 
 import (
+	"cmp"
 	"math"
+	"slices"
 
 	"tapround/survey"
 	"tapround/survey/correct"
@@ -30,8 +32,9 @@ type round struct {
 func newView(s *survey.Survey, heads []survey.Head, l limits) *view {
 	v := &view{s: s, limits: l, gauges: correct.GaugesOf(s), taps: map[string]survey.Tap{}, points: map[string]survey.Point{},
 		pipes: map[string]survey.Pipe{}, widest: map[string]string{}}
-	for _, t := range s.Taps {
-		v.taps[t.Name] = t
+	order := map[string]int{}
+	for i, t := range s.Taps {
+		v.taps[t.Name], order[t.Name] = t, i
 	}
 	for _, p := range s.Points {
 		v.points[p.Name] = p
@@ -51,6 +54,8 @@ func newView(s *survey.Survey, heads []survey.Head, l limits) *view {
 				x.heads = append(x.heads, h)
 			}
 		}
+		// In the order of the taps, so that the order of the lines decides nothing.
+		slices.SortStableFunc(x.heads, func(a, b survey.Head) int { return cmp.Compare(order[a.Tap], order[b.Tap]) })
 		x.still = v.stillness(x.force)
 		v.rounds = append(v.rounds, x)
 	}
