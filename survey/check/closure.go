@@ -125,6 +125,10 @@ func without(ws []witness, members []int) []witness {
 	return out
 }
 
+// plain is how far, m, the size of a suspect may be from what the printed heads differ by
+// without a word of explanation.
+const plain = 0.01
+
 // doesNotClose words the alert.
 func (v *view) doesNotClose(r round, m mean, worst []suspect) survey.Alert {
 	x := worst[0]
@@ -143,7 +147,11 @@ func (v *view) doesNotClose(r round, m mean, worst []suspect) survey.Alert {
 	}
 	a.Subject = x.name()
 	a.Statement = fmt.Sprintf("With nothing flowing in round %s, %s stands %s %s the rest.", r.Name, x.words(), unit.Metre.Format(math.Abs(x.size), x.sd), aboveOrBelow(x.size))
-	a.Evidence = fmt.Sprintf("%s; the rest shows %.2f m (%s); difference %.1f times its standard uncertainty", m.shown(x), x.rest, count(x.restCount, "reading"), x.z())
+	a.Evidence = fmt.Sprintf("%s; the rest shows %.2f m (%s); ", m.shown(x), x.rest, count(x.restCount, "reading"))
+	if x.tap != "" && math.Abs(m.ws[x.members[0]].value()-x.rest-x.size) > plain {
+		a.Evidence += fmt.Sprintf("%.2f m %s once allowance is made for what gauge %s shows elsewhere, ", math.Abs(x.size), aboveOrBelow(x.size), x.gauge)
+	}
+	a.Evidence += fmt.Sprintf("%.1f times its standard uncertainty", x.z())
 	if fits := v.nearUnits(r, m, x); fits != "" {
 		a.Evidence += "; another unit would explain it too: " + fits
 	}
@@ -187,7 +195,8 @@ func (v *view) nearUnits(r round, m mean, x suspect) string {
 		return ""
 	}
 	var names []string
-	for _, f := range v.fitting(r, m.ws[x.members[0]].head, v.asTheRest(x)) {
+	h := m.ws[x.members[0]].head
+	for _, f := range v.fitting(r, h, v.asTheRest(h, x)) {
 		names = append(names, f.words)
 	}
 	return strings.Join(names, ", ")

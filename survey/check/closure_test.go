@@ -299,3 +299,18 @@ func (v *view) atRestIn(name string) []witness {
 	}
 	panic(fmt.Sprintf("round %s has no one part at rest", name))
 }
+
+// Where the gauge of a tap that stands apart is seen to be off elsewhere too, the tap
+// answers only for what is left, and the alert says so.
+func TestClosureAllowsForTheGauge(t *testing.T) {
+	s := site()
+	s.Gauges[1].Accuracy = survey.Some(0.004)
+	for _, name := range []string{"T2", "T3", "T5", "T6"} {
+		reading(s, "A", name).Gauge = "G2"
+		shift(s, "A", name, 0.3)
+	}
+	shift(s, "A", "T3", 0.7)
+	a := only(t, s, doesNotClose, "T3")
+	says(t, a.Statement, "0.7")
+	says(t, a.Evidence, "T3 shows 101.00 m", "m above once allowance is made for what gauge G2 shows elsewhere")
+}

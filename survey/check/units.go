@@ -176,18 +176,18 @@ func (v *view) stillUnit(r round, m mean, worst []suspect) (survey.Alert, bool) 
 			continue
 		}
 		h := m.ws[x.members[0]].head
-		if fits := v.fitting(r, h, v.asTheRest(x)); len(fits) > 0 && v.convincing(fits[0]) {
+		if fits := v.fitting(r, h, v.asTheRest(h, x)); len(fits) > 0 && v.convincing(fits[0]) {
 			return v.unitAlert(r, h, fits, fmt.Sprintf("with nothing flowing the rest shows %.2f m (%s)", x.rest, count(x.restCount, "reading")), v.limits.apart.String()), true
 		}
 	}
 	return survey.Alert{}, false
 }
 
-// asTheRest measures how far a head is from the rest that a suspect was held against;
-// infinite beyond the limit.
-func (v *view) asTheRest(x suspect) func(float64) float64 {
+// asTheRest measures how far a head is from what its tap would show without the size of
+// the suspect it is; infinite beyond the limit.
+func (v *view) asTheRest(h survey.Head, x suspect) func(float64) float64 {
 	return func(value float64) float64 {
-		if d := math.Abs(value - x.rest); d <= v.limits.apart.value*x.sd {
+		if d := math.Abs(value - (h.Value - x.size)); d <= v.limits.apart.value*x.sd {
 			return d
 		}
 		return math.Inf(1)
