@@ -23,20 +23,46 @@ func (it *iteration) settled() (bool, float64) {
 	return l.length(l.p) <= it.set.StepTolerance*(l.length(l.x)+math.Sqrt(it.sum)), offset
 }
 
-// polish makes a last undamped Gauss-Newton step, kept if the sum of squares is no
-// worse: it squares the error that the tolerances left.
-func (it *iteration) polish() {
+// sharpen makes undamped Gauss-Newton steps where the sum of squares can no longer judge
+// them: a step counts as long as the offset falls by a tenth, and the sum does not rise
+// by more than it was to fall or than is negligible. It returns the offset reached.
+func (it *iteration) sharpen(offset float64, rounds int) float64 {
 	l := &it.local
-	promise, _ := l.step(math.Inf(1), 0)
-	if promise <= 0 {
-		return
-	}
-	l.trial(it.xt)
-	if gain, ok := it.gain(promise); ok && gain >= 0 {
-		if !it.move() {
-			it.restore()
+	x, r := make([]float64, it.N), make([]float64, it.M)
+	for range rounds {
+		promise, _ := l.step(math.Inf(1), 0)
+		if promise <= 0 {
+			return offset
+		}
+		copy(x, l.x)
+		copy(r, it.r)
+		l.trial(it.xt)
+		if gain, ok := it.gain(promise); !ok || gain*promise < -promise-it.set.Negligible || !it.move() {
+			it.restore(x, r)
+			return offset
+		}
+		settled, now := it.settled()
+		if now > 0.9*offset {
+			it.restore(x, r)
+			return offset
+		}
+		offset = now
+		if settled {
+			return offset
 		}
 	}
+	return offset
+}
+
+// restore goes back to x with residuals r.
+func (it *iteration) restore(x, r []float64) {
+	copy(it.local.x, x)
+	copy(it.r, r)
+	it.sum = squares(it.r)
+	// x has been evaluated before, so that a failure now would be the caller's doing; J
+	// then stays what it is and the gradient in the result shows it.
+	_ = it.jacobian(x)
+	it.linearise()
 }
 
 // stopped names the end where no step can lower the sum of squares any more: it is
@@ -47,13 +73,6 @@ func (it *iteration) stopped(offset float64) Status {
 		return Converged
 	}
 	return Stalled
-}
-
-// restore brings J back to x after a trial point took its place.
-func (it *iteration) restore() {
-	// x has been evaluated before, so a failure now would be the caller's doing; J then
-	// stays what it is and the gradient in the result shows it.
-	_ = it.jacobian(it.local.x)
 }
 
 // finish makes the result: rank, condition and what the covariance needs.

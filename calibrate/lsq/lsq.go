@@ -17,7 +17,6 @@
 //
 //	[More]      J. J. More, The Levenberg-Marquardt algorithm, in G. A. Watson (ed.),
 //	            Numerical Analysis, Dundee 1977, Springer (1978) 105-116
-//	[CGT]       A. R. Conn, N. I. M. Gould, Ph. L. Toint, Trust-Region Methods (2000)
 //	[Golub]     G. H. Golub, C. F. Van Loan, Matrix Computations, 4th ed. (2013)
 //	[Bates]     D. M. Bates, D. G. Watts, Technometrics 23 (1981) 179-183
 //	[Kanzow]    C. Kanzow, N. Yamashita, M. Fukushima, J. Comput. Appl. Math. 172
@@ -60,7 +59,7 @@ type Settings struct {
 	// Negligible is a decrease of the sum of squares that does not matter. Where
 	// rounding in the residuals keeps the tolerances from being met, the iteration
 	// still counts as converged when the decrease in sight is below it. Default
-	// 1e-8: no unknown is then off by more than 1e-4 of its standard deviation.
+	// 1e-6: no unknown is then off by more than a thousandth of its standard deviation.
 	Negligible float64
 }
 
@@ -72,7 +71,7 @@ func (s Settings) withDefaults() Settings {
 	for _, d := range []struct {
 		v *float64
 		d float64
-	}{{&s.StepTolerance, 1e-8}, {&s.GradientTolerance, 1e-8}, {&s.Negligible, 1e-8}} {
+	}{{&s.StepTolerance, 1e-8}, {&s.GradientTolerance, 1e-8}, {&s.Negligible, 1e-6}} {
 		if *d.v == 0 {
 			*d.v = d.d
 		}

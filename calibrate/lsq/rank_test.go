@@ -55,6 +55,51 @@ func TestProduct(t *testing.T) {
 	}
 }
 
+// TestProductAnywhere: an undetermined direction must not spoil the step in the
+// others, wherever the start.
+func TestProductAnywhere(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		a, b := rapid.Float64Range(0.2, 5).Draw(t, "a"), rapid.Float64Range(0.2, 5).Draw(t, "b")
+		want := rapid.Float64Range(0.5, 4).Draw(t, "product")
+		// The third unknown keeps the pair from being the last columns.
+		p := lsq.Problem{M: 4, N: 3,
+			Residuals: func(u, r []float64) error {
+				for i := range r {
+					s := float64(i)
+					r[i] = u[0]*u[1]*s + u[2]*s*s - want*s - 0.3*s*s + 0.01*math.Cos(5*s)
+				}
+				return nil
+			},
+			Jacobian: func(u []float64, j *mat.Dense) error {
+				for i := range 4 {
+					s := float64(i)
+					j.SetRow(i, []float64{u[1] * s, u[0] * s, s * s})
+				}
+				return nil
+			},
+		}
+		res, err := lsq.Solve(p, []float64{a, b, 0}, lsq.Settings{})
+		if err != nil || res.Status != lsq.RankDeficient || res.Rank != 2 {
+			t.Fatalf("%v, %v, rank %d", err, res.Status, res.Rank)
+		}
+		flat := mat.NewDense(4, 2, []float64{0, 0, 1, 1, 2, 4, 3, 9})
+		y := make([]float64, 4)
+		for i := range y {
+			s := float64(i)
+			y[i] = want*s + 0.3*s*s - 0.01*math.Cos(5*s)
+		}
+		lin, err := lsq.Linear(flat, y, nil)
+		if err != nil {
+			t.Fatal(err)
+		}
+		// Gauss-Newton converges quadratically in the product; two dozen steps cover the
+		// way from the start.
+		if d := math.Abs(res.X[0]*res.X[1] - lin.X[0]); d > 1e-9 || res.Iterations > 24 {
+			t.Fatalf("the product is off by %g after %d steps", d, res.Iterations)
+		}
+	})
+}
+
 // TestRank makes columns dependent on purpose and looks whether they are found, and
 // the condition of the rest against gonum's singular values.
 func TestRank(t *testing.T) {
@@ -161,6 +206,31 @@ func TestLeverage(t *testing.T) {
 			}
 		}
 	})
+}
+
+// TestWeights: a weight of three is the same row three times.
+func TestWeights(t *testing.T) {
+	a := mat.NewDense(4, 2, []float64{1, 0, 1, 1, 1, 2, 1, 4})
+	y := []float64{0.3, 1.1, 1.8, 4.4}
+	got, err := lsq.Linear(a, y, []float64{1, 3, 1, 1})
+	if err != nil {
+		t.Fatal(err)
+	}
+	b := mat.NewDense(6, 2, []float64{1, 0, 1, 1, 1, 1, 1, 1, 1, 2, 1, 4})
+	want, err := lsq.Linear(b, []float64{0.3, 1.1, 1.1, 1.1, 1.8, 4.4}, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for k := range 2 {
+		near(t, "unknown", got.X[k], want.X[k], 1e-13)
+	}
+	near(t, "sum of squares", got.SumSquares, want.SumSquares, 1e-13)
+	near(t, "leverage", got.Leverage()[1], 3*want.Leverage()[1], 1e-13)
+	for _, w := range [][]float64{{1, -1, 1, 1}, {1, math.NaN(), 1, 1}} {
+		if _, err := lsq.Linear(a, y, w); err == nil {
+			t.Errorf("weights %v are no error", w)
+		}
+	}
 }
 
 // TestExact: exact observations give back the truth.

@@ -136,7 +136,8 @@ func (it *iteration) linearise() {
 	l.release()
 }
 
-// noise is the share of the sum of squares below which differences are rounding.
+// noise is the share of the sum of squares below which a decrease cannot be told from
+// rounding.
 const noise = 16 * epsilon
 
 // iterate runs until a status is reached, leaving x, r and J belonging together.
@@ -147,15 +148,14 @@ func (it *iteration) iterate() Status {
 	if radius <= 0 {
 		radius = math.Max(l.length(l.x), math.Sqrt(it.sum))
 	}
-	lambda, best, idle := 0.0, math.Inf(1), 0
+	lambda := 0.0
 	for {
 		settled, offset := it.settled()
 		if settled {
-			it.polish()
+			if offset > 1e-3*it.set.GradientTolerance {
+				it.sharpen(offset, 1)
+			}
 			return Converged
-		}
-		if idle++; offset < 0.9*best {
-			best, idle = offset, 0
 		}
 		for moved := false; !moved; {
 			if it.steps++; it.steps > it.set.MaxIterations {
@@ -164,10 +164,8 @@ func (it *iteration) iterate() Status {
 			var promise float64
 			promise, lambda = l.step(radius, lambda)
 			length := l.length(l.p)
-			// Below its rounding the sum of squares cannot judge a step; it is taken as long
-			// as the offset still falls.
-			if length <= epsilon*l.length(l.x) || promise <= noise*it.sum && idle > 2 {
-				return it.stopped(offset)
+			if length <= epsilon*l.length(l.x) || promise <= noise*it.sum {
+				return it.stopped(it.sharpen(offset, 20))
 			}
 			l.trial(it.xt)
 			gain, ok := it.gain(promise)
@@ -181,7 +179,7 @@ func (it *iteration) iterate() Status {
 }
 
 // gain evaluates the trial point and returns the decrease of the sum of squares over
-// the promised one, both widened by rounding [CGT, section 17.4.2].
+// the promised one.
 func (it *iteration) gain(promise float64) (gain float64, ok bool) {
 	if it.residuals(it.xt, it.rt) != nil {
 		return 0, false
@@ -190,8 +188,7 @@ func (it *iteration) gain(promise float64) (gain float64, ok bool) {
 	for i, v := range it.r {
 		fall += (v - it.rt[i]) * (v + it.rt[i])
 	}
-	slack := noise * it.sum
-	return (fall + slack) / (promise + slack), true
+	return fall / promise, true
 }
 
 // resize updates radius and damping by the gain [More, section 4].

@@ -2,6 +2,7 @@ package stat_test
 
 import (
 	"math"
+	"math/rand/v2"
 	"testing"
 
 	"gonum.org/v1/gonum/mat"
@@ -106,6 +107,23 @@ func TestMixUp(t *testing.T) {
 		near(t, "back", stat.MixUp(stat.SeparatingT(0.05, rho), rho), 0.05, 1e-12)
 	}
 	near(t, "same signature", stat.MixUp(1000, 1), 0.5, 1e-15)
+
+	// Statistics of a true fault of size 3 and of a rival at cosine 0.5.
+	const rho, size, draws = 0.5, 3.0, 200000
+	r := rand.New(rand.NewPCG(3, 3))
+	wrong := 0
+	for range draws {
+		a, b := r.NormFloat64(), r.NormFloat64()
+		own := size + a
+		rival := rho*own + math.Sqrt(1-rho*rho)*b
+		if math.Abs(rival) > math.Abs(own) {
+			wrong++
+		}
+	}
+	// Five standard errors of the simulation, and 0.001 for rivals of the other sign,
+	// which the formula leaves out.
+	p := stat.MixUp(size*size, rho)
+	near(t, "simulated", float64(wrong)/draws, p, 5*math.Sqrt(p*(1-p)/draws)+0.001)
 }
 
 // TestEvidence: the Bayes factor of a shift of known spread against none has a closed

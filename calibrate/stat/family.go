@@ -34,6 +34,9 @@ func FamilyLimit(corr *mat.SymDense, sides []int, alpha float64, draws int, seed
 	if independent(corr, sides) {
 		return SidakLimit(n, sides[0], alpha)
 	}
+	if draws < 1 {
+		panic("stat: the family-wise limit of dependent statistics needs draws")
+	}
 	highest := make([]float64, 0, draws)
 	simulate(corr, sides, draws, seed, func(w []float64) {
 		highest = append(highest, slices.Max(w))

@@ -188,6 +188,10 @@ func TestStepDownMinP(t *testing.T) {
 	for _, v := range stat.StepDownMinP([]float64{2.4, 2.4, 2.4}, c, sidesOf(3, 2), draws, 2) {
 		near(t, "repeated test", v, p[2], 5*math.Sqrt(p[2]/draws))
 	}
+	// Two alike share the p value of the worse place, 1 - (1 - p)^2.
+	for _, v := range stat.StepDownMinP([]float64{1.9, 1.9}, identity(2), sidesOf(2, 1), draws, 3) {
+		near(t, "two alike", v, 1-math.Pow(1-p[3], 2), 5*math.Sqrt(0.057*0.943/draws))
+	}
 	// Nothing is more certain than the draws allow.
 	if v := stat.StepDownMinP([]float64{40}, identity(1), []int{2}, 99, 1); v[0] != 0.01 {
 		t.Errorf("p of 40 by 99 draws is %g", v[0])
