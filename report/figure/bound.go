@@ -3,9 +3,9 @@ package figure
 import (
 	"math"
 	"strings"
-	"unicode"
 
 	"tapround/report"
+	"tapround/report/internal/say"
 )
 
 // bound is the least and greatest of some numbers; not ok: of none.
@@ -100,16 +100,6 @@ func runs(lines [][]report.XY) [][]report.XY {
 
 func isNumber(v float64) bool { return !math.IsNaN(v) && !math.IsInf(v, 0) }
 
-// clean takes out of a name what no picture format can carry: control characters
-// are not allowed in SVG at all.
-func clean(s string) string {
-	return strings.Map(func(r rune) rune {
-		switch {
-		case r == unicode.ReplacementChar || unicode.IsControl(r) || r == 0xFFFE || r == 0xFFFF:
-			return ' '
-		case r == '\u2011': // the font has no such hyphen
-			return '-'
-		}
-		return r
-	}, strings.ToValidUTF8(s, " "))
-}
+// clean takes out of a name what no picture format can carry, and a hyphen that the
+// font has not.
+func clean(s string) string { return strings.ReplaceAll(say.Clean(s), "\u2011", "-") }

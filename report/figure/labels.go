@@ -2,6 +2,7 @@ package figure
 
 import (
 	"sort"
+	"strings"
 
 	"gonum.org/v1/plot/text"
 	"gonum.org/v1/plot/vg"
@@ -63,6 +64,23 @@ func fit(st text.Style, s string, width vg.Length) string {
 		r = r[:len(r)-1]
 	}
 	return string(r) + "…"
+}
+
+// wrap breaks a text into lines of at most the width, between words.
+func wrap(st text.Style, s string, width vg.Length) []string {
+	var out []string
+	line := ""
+	for _, w := range strings.Fields(s) {
+		if line != "" && st.Width(line+" "+w) > width {
+			out = append(out, line)
+			line = ""
+		}
+		if line != "" {
+			line += " "
+		}
+		line += w
+	}
+	return append(out, line)
 }
 
 // strip is an interval that wants a row of its own where it meets others.

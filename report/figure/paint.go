@@ -111,7 +111,7 @@ func (s *sheet) paintLegend(c draw.Canvas, top vg.Length) {
 		}
 		y -= legendRow
 	}
-	for _, n := range s.notes {
+	for _, n := range s.noteLines {
 		c.FillText(aligned(italicText(smallSize, pencil), draw.XLeft, draw.YCenter), vg.Point{X: edge, Y: y - noteRow/2}, n)
 		y -= noteRow
 	}

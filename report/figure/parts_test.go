@@ -138,6 +138,20 @@ func TestFit(t *testing.T) {
 	}
 }
 
+func TestWrap(t *testing.T) {
+	st := italicText(smallSize, pencil)
+	s := "Total head lies at most 0.16 m above the piezometric line: not visible at this scale, so one line stands for both."
+	got := wrap(st, s, 150)
+	for _, l := range got {
+		if st.Width(l) > 150 {
+			t.Errorf("%q is %v wide", l, st.Width(l))
+		}
+	}
+	if len(got) < 3 || strings.Join(got, " ") != s {
+		t.Errorf("%q", got)
+	}
+}
+
 // The PDF canvas against the transform it should make: turn, then move, as the
 // library's other canvases do.
 func TestPDFTransforms(t *testing.T) {

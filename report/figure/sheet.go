@@ -32,6 +32,7 @@ type sheet struct {
 	strips        []strip
 	stripRows     int
 	legendRows    [][]entry
+	noteLines     []string
 }
 
 func (s sheet) heading() string {
@@ -130,12 +131,7 @@ func (s *sheet) along(p report.Profile) {
 	if !reach.ok || reach.size() == 0 {
 		reach = bound{lo: reach.lo, hi: reach.lo + 1, ok: true}
 	}
-	s.x = newScale(reach.lo, reach.hi, 8)
 	s.x.min, s.x.max = reach.lo, reach.hi
-	s.xLabel = "distance along the route, m"
-	if reach.size() >= 20000 {
-		s.x.per, s.xLabel = 1000, "distance along the route, km"
-	}
 	for _, v := range p.Suspect {
 		s.spans = append(s.spans, span{from: v.From, to: v.To, label: clean(v.Label)})
 	}
@@ -153,6 +149,17 @@ func (s *sheet) along(p report.Profile) {
 	}
 }
 
+// xTicks marks the route from its beginning to its end, which need not be ticks.
+func (s *sheet) xTicks() {
+	lo, hi := s.x.min, s.x.max
+	s.x = newScale(lo, hi, max(2, int(s.width/80)))
+	s.x.min, s.x.max = lo, hi
+	s.xLabel = "distance along the route, m"
+	if hi-lo >= 20000 {
+		s.x.per, s.xLabel = 1000, "distance along the route, km"
+	}
+}
+
 // addName keeps one of the names that say the same of one place, as a tap at a
 // point of its own name does.
 func (s *sheet) addName(n name) {
@@ -167,18 +174,23 @@ func (s *sheet) addName(n name) {
 // layout fixes the sizes: first the width of the axis labels, then the rows of
 // names, then the height.
 func (s *sheet) layout() {
+	s.xTicks()
 	s.measureAxes()
 	s.right = s.width - 16
 	s.placeNames()
 	s.placeSpans()
 	s.choose()
 	s.fillLegend()
+	s.noteLines = nil
+	for _, n := range s.notes {
+		s.noteLines = append(s.noteLines, wrap(italicText(smallSize, pencil), n, s.width-2*edge)...)
+	}
 	h := vg.Length(20) // title
 	h += vg.Length(s.stripRows)*stripRow + s.nameHeight
 	for _, p := range s.panels {
 		h += p.captionHeight() + p.height + panelGap
 	}
-	h += axisHeight + vg.Length(len(s.legendRows))*legendRow + vg.Length(len(s.notes))*noteRow + 6
+	h += axisHeight + vg.Length(len(s.legendRows))*legendRow + vg.Length(len(s.noteLines))*noteRow + 6
 	s.height = h
 }
 

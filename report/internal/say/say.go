@@ -31,7 +31,7 @@ func Kind(k survey.FindingKind) string {
 	case survey.NotCovered:
 		return "not seen"
 	}
-	return strings.ReplaceAll(string(k), "-", " ")
+	return strings.ReplaceAll(Clean(string(k)), "-", " ")
 }
 
 // Where names the thing a finding is about, with its noun.
@@ -66,7 +66,34 @@ func Rival(s string) string {
 	if !ok {
 		return Clean(s)
 	}
-	return Kind(survey.FindingKind(kind)) + " " + Clean(item)
+	item = Clean(item)
+	switch survey.FindingKind(kind) {
+	case survey.FouledPipe:
+		return "pipe " + item + " fouled"
+	case survey.PartClosedValve:
+		return "valve " + item + " part closed"
+	case survey.BlockedFitting:
+		return "fitting " + item + " blocked"
+	case survey.GaugeOff:
+		return "gauge " + item + " off"
+	case survey.LevelWrong:
+		return "level of " + item + " wrong"
+	case survey.UnrecordedFlow:
+		return "unrecorded flow at " + item
+	case survey.MachineOffCurve:
+		return "machine " + item + " off its curve"
+	}
+	return Kind(survey.FindingKind(kind)) + " " + item
+}
+
+// Stated prints a number as a table states it: no figures it does not need, four at
+// most.
+func Stated(v float64) string {
+	s := unit.Significant(v, 4)
+	if strings.Contains(s, ".") {
+		s = strings.TrimRight(strings.TrimRight(s, "0"), ".")
+	}
+	return s
 }
 
 // Size is the estimate with its 95 % interval, rounded to the nearer end's
@@ -82,8 +109,8 @@ func Size(f survey.Finding) string {
 	return s
 }
 
-// Quantity puts a unit beside a printed number: "9.1 mm", "K 45", "C 64",
-// "0.99 times".
+// Quantity puts a unit beside a printed number: "9.1 mm (6.9 to 12.1)", "K 45",
+// "C 64", "0.99 times".
 func Quantity(number, u string) string {
 	switch u {
 	case "":
@@ -91,13 +118,14 @@ func Quantity(number, u string) string {
 	case "K", "C":
 		return u + " " + number
 	case "factor":
-		return number + " times"
+		u = "times"
 	}
+	u = Clean(u)
 	// The unit stands after the value and before the interval in brackets.
 	if v, rest, ok := strings.Cut(number, " ("); ok {
-		return v + " " + Clean(u) + " (" + rest
+		return v + " " + u + " (" + rest
 	}
-	return number + " " + Clean(u)
+	return number + " " + u
 }
 
 // Interval is "9.1 (95 %: 6.9 to 12.1)", all three rounded alike; without an
@@ -160,7 +188,7 @@ func Probability(m survey.Maybe) string {
 
 // Sure says how sure a finding is, in words and in number.
 func Sure(f survey.Finding) string {
-	s := string(f.Grade)
+	s := Clean(string(f.Grade))
 	if f.Probability.OK {
 		s += ", probability " + Probability(f.Probability)
 	}
@@ -343,13 +371,13 @@ func With(m, u survey.Maybe) string {
 }
 
 // Clean makes a text one printable line: a name from a table may hold an escape
-// sequence for the terminal or a line end.
+// sequence for the terminal, a line end, or what XML and so SVG forbid.
 func Clean(s string) string {
 	return strings.Map(func(r rune) rune {
 		switch {
 		case r == '\n' || r == '\r' || r == '\t':
 			return ' '
-		case unicode.IsControl(r) || r == unicode.ReplacementChar || isTurn(r):
+		case unicode.IsControl(r) || r == unicode.ReplacementChar || r == 0xFFFE || r == 0xFFFF || isTurn(r):
 			return -1
 		}
 		return r

@@ -21,7 +21,7 @@ func TestSize(t *testing.T) {
 		{survey.GaugeOff, 0.1213, 0.108, 0.134, "bar", "+0.121 bar (95 %: 0.108 to 0.134)"},
 		{survey.LevelWrong, -2.38, -2.54, -2.22, "m", "-2.38 m (95 %: -2.54 to -2.22)"},
 		{survey.UnrecordedFlow, 4.02, 3.5, 4.5, "L/s", "4.02 L/s (95 %: 3.50 to 4.50)"},
-		{survey.MachineOffCurve, 0.894, 0.86, 0.93, "factor", "0.894 (95 %: 0.860 to 0.930) times"},
+		{survey.MachineOffCurve, 0.894, 0.86, 0.93, "factor", "0.894 times (95 %: 0.860 to 0.930)"},
 	} {
 		f := survey.Finding{Kind: c.kind, Estimate: some(c.v), Low: some(c.low), High: some(c.high), Unit: c.unit}
 		if got := Size(f); got != c.want {
@@ -123,8 +123,15 @@ func TestCleanAndLines(t *testing.T) {
 	if got := Decimals(some(-0.004), 2); got != "0.00" {
 		t.Errorf("%q", got)
 	}
-	if got := Rival("part-closed-valve:SV-031"); got != "part-closed valve SV-031" {
-		t.Errorf("%q", got)
+	for in, want := range map[string]string{"part-closed-valve:SV-031": "valve SV-031 part closed", "unrecorded-flow:N7": "unrecorded flow at N7", "unit-suspect:G1": "unit in doubt G1", "x": "x"} {
+		if got := Rival(in); got != want {
+			t.Errorf("%q is %q, want %q", in, got, want)
+		}
+	}
+	for v, want := range map[float64]string{0.3: "0.3", 0.05: "0.05", 1.5: "1.5", 100: "100", 0.15000000000000002: "0.15", 12.3456: "12.35", 0: "0"} {
+		if got := Stated(v); got != want {
+			t.Errorf("%v is stated %q, want %q", v, got, want)
+		}
 	}
 }
 
