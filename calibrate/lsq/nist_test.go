@@ -186,7 +186,7 @@ func TestNISTDerivatives(t *testing.T) {
 // linear sets.
 func TestNISTLinear(t *testing.T) {
 	// Digits asked for: what QR of scaled columns keeps of each set's 15, by its
-	// condition (ESTIMATION figures computed for this project); deviations keep more.
+	// condition, as computed for this project; deviations keep more.
 	need := map[string][2]float64{
 		"Norris": {11, 12}, "Pontius": {11, 12}, "NoInt1": {13, 13}, "NoInt2": {13, 13},
 		"Filip": {7, 8}, "Longley": {10, 11}, "Wampler1": {9, 0}, "Wampler2": {9, 0},

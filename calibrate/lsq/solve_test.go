@@ -34,7 +34,7 @@ func normals(r *rand.Rand, n int) []float64 {
 }
 
 // TestSecondOpinion compares with the Newton method of gonum/optimize on the
-// log-decrement form of a pressure-loss fit: h = exp(a) q^exp(b) with a prior row.
+// loss of head h = exp(a) q^exp(b) over the flow, with a prior row on b.
 func TestSecondOpinion(t *testing.T) {
 	q := []float64{0.5, 1, 1.5, 2, 3, 4}
 	h := []float64{0.31, 1.02, 2.35, 3.8, 8.4, 14.9}
