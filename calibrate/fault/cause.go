@@ -49,7 +49,7 @@ type Odds struct {
 
 // DefaultOdds is judgement: what surveys of old mains turn up most often first.
 func DefaultOdds() Odds {
-	return Odds{Pipe: 0.03, Valve: 0.03, Fitting: 0.03, Gauge: 0.02, Tap: 0.02, Reservoir: 0.01, Draw: 0.01, Machine: 0.03, Reading: 0.002}
+	return Odds{Pipe: 0.05, Valve: 0.05, Fitting: 0.05, Gauge: 0.03, Tap: 0.03, Reservoir: 0.02, Draw: 0.02, Machine: 0.05, Reading: 0.003}
 }
 
 // Settings of a diagnosis.
