@@ -237,3 +237,28 @@ func TestProfileOfLinear(t *testing.T) {
 		t.Error("a profile below its minimum goes unnoticed")
 	}
 }
+
+// TestProfileMeetsNothing: where the unknown cannot be evaluated any further the
+// interval ends at the edge of what can.
+func TestProfileMeetsNothing(t *testing.T) {
+	p := lsq.Problem{M: 1, N: 1,
+		Residuals: func(x, r []float64) error {
+			if x[0] > 1.5 {
+				return errNegative
+			}
+			r[0] = x[0]
+			return nil
+		},
+		Jacobian: func(_ []float64, j *mat.Dense) error { j.Set(0, 0, 1); return nil },
+	}
+	res, err := lsq.Solve(p, []float64{1}, lsq.Settings{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	lower, upper, err := lsq.Profile(p, res, 0, 4, lsq.Settings{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	near(t, "lower end", lower, -2, 1e-6)
+	near(t, "edge", upper, 1.5, 1e-6)
+}

@@ -164,3 +164,64 @@ func TestStatus(t *testing.T) {
 		}
 	}
 }
+
+// TestCallersFaults: what the caller gets wrong is an error, not a status.
+func TestCallersFaults(t *testing.T) {
+	good := linear(mat.NewDense(2, 1, []float64{1, 1}), []float64{1, 2})
+	for name, c := range map[string]struct {
+		change func(p *lsq.Problem)
+		start  []float64
+	}{
+		"no rows":       {func(p *lsq.Problem) { p.M = 0 }, []float64{0}},
+		"no Jacobian":   {func(p *lsq.Problem) { p.Jacobian = nil }, []float64{0}},
+		"short start":   {func(*lsq.Problem) {}, nil},
+		"long bounds":   {func(p *lsq.Problem) { p.Upper = []float64{1, 2} }, []float64{0}},
+		"bounds cross":  {func(p *lsq.Problem) { p.Lower, p.Upper = []float64{1}, []float64{0} }, []float64{0}},
+		"bound unknown": {func(p *lsq.Problem) { p.Lower = []float64{math.NaN()} }, []float64{0}},
+		"start unknown": {func(*lsq.Problem) {}, []float64{math.Inf(1)}},
+		"no derivative": {func(p *lsq.Problem) {
+			p.Jacobian = func([]float64, *mat.Dense) error { return errors.New("none") }
+		}, []float64{0}},
+		"derivative not finite": {func(p *lsq.Problem) {
+			p.Jacobian = func(_ []float64, j *mat.Dense) error { j.Set(0, 0, math.NaN()); return nil }
+		}, []float64{0}},
+	} {
+		p := good
+		c.change(&p)
+		if res, err := lsq.Solve(p, c.start, lsq.Settings{}); err == nil {
+			t.Errorf("%s: no error, %v", name, res.Status)
+		}
+	}
+	// A start outside its bounds is moved onto them.
+	p := good
+	p.Upper = []float64{1}
+	if res, err := lsq.Solve(p, []float64{7}, lsq.Settings{}); err != nil || res.X[0] != 1 || res.Rank != 0 {
+		t.Errorf("start outside: %v, %+v", err, res)
+	}
+	// Where no derivative can be had beyond a point, the iteration stays this side of it.
+	p = good
+	p.Jacobian = func(x []float64, j *mat.Dense) error {
+		if x[0] > 1.2 {
+			return errors.New("beyond")
+		}
+		j.Set(0, 0, 1)
+		j.Set(1, 0, 1)
+		return nil
+	}
+	res, err := lsq.Solve(p, []float64{0}, lsq.Settings{})
+	if err != nil || res.Status != lsq.Stalled || res.X[0] > 1.2 || res.X[0] < 1.19 {
+		t.Errorf("derivatives end at 1.2: %v, %v at %v", err, res.Status, res.X)
+	}
+	consistent(t, p, res)
+}
+
+// TestWords: every status has its own.
+func TestWords(t *testing.T) {
+	seen := map[string]bool{}
+	for s := lsq.Converged; s <= lsq.IterationLimit; s++ {
+		seen[s.String()] = true
+	}
+	if len(seen) != 4 || seen[lsq.Status(9).String()] {
+		t.Errorf("words %v", seen)
+	}
+}

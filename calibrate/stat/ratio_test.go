@@ -80,3 +80,26 @@ func solvePrior(t *rapid.T, j, y, g *mat.Dense) *lsq.Result {
 	}
 	return res
 }
+
+// TestDependent: balances or readings that repeat others are an error, and a fault that
+// reaches nothing has no ratio.
+func TestDependent(t *testing.T) {
+	a := mat.NewDense(2, 2, []float64{1, -1, 2, -2})
+	if _, err := stat.Reconcile([]float64{1, 2}, identity(2), a); err == nil {
+		t.Error("two balances that are one pass")
+	}
+	flat := mat.NewSymDense(2, []float64{1, 1, 1, 1})
+	if _, err := stat.CorrelatedW([]float64{1, 2}, flat, flat); err == nil {
+		t.Error("readings of one error pass")
+	}
+	d, err := stat.NewDetector(identity(2))
+	if err != nil {
+		t.Fatal(err)
+	}
+	if ratio, size, sd := d.Ratio([]float64{1, 2}, []float64{0, 0}); ratio != 0 || size != 0 || !math.IsInf(sd, 1) {
+		t.Errorf("a fault that reaches nothing has ratio %g, size %g, deviation %g", ratio, size, sd)
+	}
+	if c := d.Cosine([]float64{0, 0}, []float64{1, 0}); c != 0 {
+		t.Errorf("cosine with nothing is %g", c)
+	}
+}
