@@ -27,9 +27,19 @@ func (f *Fit) Value(k int) (value, low, high float64) {
 }
 
 // Told is the share of unknown k that comes from the readings rather than from
-// its prior: 1 - (posterior SD / prior SD)^2, between 0 and 1.
+// its prior: 1 - (posterior SD / prior SD)^2, between 0 and 1. Where a cause acts on the
+// same quantity the two are taken together.
 func (f *Fit) Told(k int) float64 {
-	return clamp(1-f.Cov().At(k, k)/f.spread[k], 0, 1)
+	causes := f.actingOn(k)
+	if k >= len(f.Model.Unknowns) || len(causes) == 0 {
+		return clamp(1-f.Cov().At(k, k)/f.spread[k], 0, 1)
+	}
+	_, sd := f.ItemTheta(k)
+	prior := sq(f.Unknowns[k].SD)
+	for _, c := range causes {
+		prior += sq(f.Unknowns[c].SD)
+	}
+	return clamp(1-sd*sd/prior, 0, 1)
 }
 
 // DoF is the number of readings in use less the causes and less the unknowns

@@ -52,6 +52,9 @@ func (m *Model) MeasuredFlow(round, link int) (float64, bool) {
 func (f *Fit) Whole(k int) (value, low, high float64) {
 	x := f.Unknowns[k]
 	theta, sd := f.ItemTheta(k)
+	if x.Kind == "pipe" && len(f.actingOn(k)) > 0 {
+		sd = math.Hypot(sd, f.LawSD(k))
+	}
 	s := 1.959964 * sd
 	if x.Log {
 		return x.Expected * math.Exp(theta), x.Expected * math.Exp(theta-s), x.Expected * math.Exp(theta+s)
@@ -59,11 +62,60 @@ func (f *Fit) Whole(k int) (value, low, high float64) {
 	return x.Expected + theta, x.Expected + theta - s, x.Expected + theta + s
 }
 
+// actingOn lists the causes that act on the quantity of unknown k.
+func (f *Fit) actingOn(k int) []int {
+	own := f.Unknowns[k]
+	var out []int
+	if len(own.Targets) != 1 || own.Targets[0].round != everyRound {
+		return nil
+	}
+	for c := len(f.Model.Unknowns); c < len(f.Unknowns); c++ {
+		for _, t := range f.Unknowns[c].Targets {
+			if t.class == own.Targets[0].class && t.index == own.Targets[0].index {
+				out = append(out, c)
+			}
+		}
+	}
+	return out
+}
+
+// LawSD is what a pipe's bore and the friction law itself, which are no unknowns, add to
+// the uncertainty of its ln roughness (or ln C) when that is reported as a finding: 1 % of
+// bore is 5 % of loss, and both act through d ln h / d ln k at the largest flow.
+func (f *Fit) LawSD(k int) float64 {
+	l := f.Model.LinkIndex(f.Unknowns[k].Item)
+	p := f.Model.Priors
+	if f.Unknowns[k].Quantity == "c_value" {
+		return 2.63 * p.LnBore
+	}
+	most, round := 0.0, 0
+	for r := range f.Model.Rounds {
+		if q := math.Abs(f.FlowOf(r, l)); q > most {
+			most, round = q, r
+		}
+	}
+	c := f.Conditions(round)
+	loss := f.Model.System.Link(l).Pipe.Loss(most, f.LnRough(l), c.Viscosity, c.Gravity)
+	slope := 0.05 // all but smooth: the interval is open there anyway
+	if loss.H > 0 {
+		slope = math.Max(slope, loss.DParam/loss.H)
+	}
+	return math.Hypot(p.FrictionLaw, 5*p.LnBore) / slope
+}
+
 // PipeLine is the grade lines along one pipe in a round: at its ends, both sides of each
 // fitting, and its taps.
 func (f *Fit) PipeLine(round, link int) []Vertex {
 	from, to := f.Model.endsOf(link)
-	return f.alongWith(Way{Legs: []Leg{{link, math.Inf(-1), math.Inf(1)}}, Points: []int{from, to}}, round, true)
+	vs := f.alongWith(Way{Legs: []Leg{{link, math.Inf(-1), math.Inf(1)}}, Points: []int{from, to}}, round, true)
+	out := vs[:1]
+	for _, v := range vs[1:] {
+		// A fitting at the very end has its near side at the end: one vertex is enough.
+		if last := out[len(out)-1]; v.At != last.At || v.Total != last.Total {
+			out = append(out, v)
+		}
+	}
+	return out
 }
 
 // HeadsAt gives velocity head and piezometric head at a tap in a round by the fit;

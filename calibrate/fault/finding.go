@@ -114,22 +114,18 @@ func (d *Diagnosis) size(a *Accepted, f *survey.Finding) {
 	case survey.FouledPipe:
 		l := m.LinkIndex(a.Item)
 		v := fit.LnRough(l)
-		s := d.itemSD(a)
+		_, s := fit.ItemTheta(a.place)
+		s = math.Hypot(s, fit.LawSD(a.place))
+		scale, u := 1e3, "mm"
 		if m.Survey.Info.FrictionLaw == survey.HazenWilliams {
-			s = math.Hypot(s, 2.63*m.Priors.LnBore)
-			set(math.Exp(v), math.Exp(v-1.96*s), math.Exp(v+1.96*s), "C")
-			f.Expected = survey.Some(math.Exp(m.ExpectedLnRough(l)))
-			return
+			scale, u = 1, "C"
 		}
-		// Bore and the friction law are not unknowns: 1 % of bore is 5 % of
-		// loss, and both act on ln k through d ln f / d ln k.
-		s = math.Hypot(s, math.Hypot(m.Priors.FrictionLaw, 5*m.Priors.LnBore)/math.Max(0.05, d.slope(l)))
-		set(1e3*math.Exp(v), 1e3*math.Exp(v-1.96*s), 1e3*math.Exp(v+1.96*s), "mm")
-		f.Expected = survey.Some(1e3 * math.Exp(m.ExpectedLnRough(l)))
+		set(scale*math.Exp(v), scale*math.Exp(v-1.96*s), scale*math.Exp(v+1.96*s), u)
+		f.Expected = survey.Some(scale * math.Exp(m.ExpectedLnRough(l)))
 	case survey.PartClosedValve, survey.BlockedFitting:
 		flat := m.FlatFitting(a.Item)
 		v := fit.LnKOf(flat)
-		s := d.itemSD(a)
+		_, s := fit.ItemTheta(a.place)
 		set(math.Exp(v), math.Exp(v-1.96*s), math.Exp(v+1.96*s), "K")
 		f.Expected = survey.Some(math.Exp(m.ExpectedLnK(flat)))
 	case survey.GaugeOff:
@@ -157,24 +153,6 @@ func (d *Diagnosis) size(a *Accepted, f *survey.Finding) {
 		set(1+total, 1+total-1.96*s, 1+total+1.96*s, "factor")
 		f.Expected = survey.Some(1)
 	}
-}
-
-// itemSD is the SD of the logarithm of an item's whole value: its sound scatter and
-// the cause together.
-func (d *Diagnosis) itemSD(a *Accepted) float64 {
-	_, sd := d.Final.ItemTheta(a.place)
-	return sd
-}
-
-// slope is d ln f / d ln k at the largest fitted flow.
-func (d *Diagnosis) slope(link int) float64 {
-	r, q := d.busiest(link)
-	c := d.Final.Conditions(r)
-	l := d.Model.System.Link(link).Pipe.Loss(q, d.Final.LnRough(link), c.Viscosity, c.Gravity)
-	if l.H == 0 {
-		return 0.2
-	}
-	return l.DParam / l.H
 }
 
 // busiest is the round in which a link carries most, and that flow's size.
@@ -330,7 +308,7 @@ func (d *Diagnosis) evidence(a *Accepted, f *survey.Finding) {
 		f.Evidence = append(f.Evidence, "with faults taken to be ten times as large by nature it would not outweigh chance")
 	}
 	for i, r := range append(append([]Rival(nil), a.Class...), a.Others...) {
-		if i >= 4 {
+		if i >= 4 || r.LnOdds > hopeless {
 			break
 		}
 		word := "fits less well"
@@ -339,17 +317,21 @@ func (d *Diagnosis) evidence(a *Accepted, f *survey.Finding) {
 		}
 		f.Rivals = append(f.Rivals, fmt.Sprintf("%s %s: odds %s", strings.ReplaceAll(string(r.Kind), "-", " "), r.Item, oddsWord(r.LnOdds))+" ("+word+")")
 	}
+	if len(f.Rivals) == 0 {
+		f.Rivals = append(f.Rivals, "nothing else that was looked for comes near: the odds against the best rival are over ten thousand to one")
+	}
 	if a.None > 0.05 {
 		f.Rivals = append(f.Rivals, fmt.Sprintf("none of the causes looked for: probability %.0f %%", 100*a.None))
 	}
 }
 
+// hopeless is the ln odds beyond which a rival is not worth a line: ten thousand to one.
+const hopeless = 9.2
+
 func oneIn(rate float64) string { return fmt.Sprintf("%.0f", 1/rate) }
 
 func oddsWord(ln float64) string {
 	switch {
-	case ln > 20:
-		return "over a million to one against it"
 	case ln > 0.7:
 		return fmt.Sprintf("%.0f to 1 against it", math.Exp(ln))
 	case ln > -0.7:

@@ -24,7 +24,7 @@ type outcome struct {
 	failed                        bool
 	any, provenWrong, right, open bool
 	named                         string
-	inside, intervals             int // 95 % intervals of sound unknowns that hold the prior draw's truth
+	inside, sized                 bool // the 95 % interval of the right finding holds the truth
 }
 
 // TestStudy draws sound and faulty surveys, runs the product and counts. The plain run
@@ -72,8 +72,9 @@ func TestStudy(t *testing.T) {
 	}
 	sound, alarms, failed := 0, 0, 0
 	seen, right, wrong := 0, 0, 0
+	inside, sized := 0, 0
 	for _, k := range kinds {
-		kSeen, kRight, kOpen, kWrong := 0, 0, 0, 0
+		kSeen, kRight, kOpen, kWrong, kSized, kInside := 0, 0, 0, 0, 0, 0
 		for _, o := range byKind[k] {
 			if o.failed {
 				failed++
@@ -89,6 +90,12 @@ func TestStudy(t *testing.T) {
 			if o.provenWrong {
 				kWrong++
 			}
+			if o.sized {
+				kSized++
+				if o.inside {
+					kInside++
+				}
+			}
 			if o.ratio > 4 {
 				kSeen++
 				if o.right {
@@ -99,13 +106,15 @@ func TestStudy(t *testing.T) {
 			}
 		}
 		if k != "" {
-			t.Logf("%-18s over 4 u: %d, named %d, in an honest class %d; wrong cause proven in %d of %d", k, kSeen, kRight, kOpen, kWrong, len(byKind[k]))
+			t.Logf("%-18s over 4 u: %d, named %d, in an honest class %d; wrong cause proven in %d of %d; 95 %% interval holds the truth in %d of %d", k, kSeen, kRight, kOpen, kWrong, len(byKind[k]), kInside, kSized)
+			inside, sized = inside+kInside, sized+kSized
 			seen, right, wrong = seen+kSeen, right+kRight+kOpen, wrong+kWrong
 		}
 	}
 	rate := float64(alarms) / float64(sound)
 	t.Logf("sound: %d surveys, %d with a proven or likely finding (%.1f %%); found over 4 u: %d of %d (%.0f %%); wrong cause proven: %d; not computed: %d",
 		sound, alarms, 100*rate, right, seen, 100*float64(right)/float64(seen), wrong, failed)
+	t.Logf("95 %% intervals of rightly named faults hold the truth in %d of %d (%.1f %%)", inside, sized, 100*float64(inside)/float64(sized))
 	// Binomial limits at n = 36 sound surveys: 5 % nominal gives 6 or more once in
 	// a hundred runs.
 	if rate > 0.05+3*math.Sqrt(0.05*0.95/float64(sound)) {
@@ -154,7 +163,8 @@ func runOne(kind survey.FindingKind, i int) outcome {
 		}
 		switch {
 		case hit:
-			o.right = true
+			o.right, o.sized = true, f.Low.OK
+			o.inside = f.Low.V <= s.fault.size && s.fault.size <= f.High.V
 		case inClass:
 			o.open = true
 		case f.Grade == survey.Proven:

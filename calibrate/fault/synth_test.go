@@ -52,6 +52,13 @@ func newSynth(rng *rand.Rand, shape string, kind survey.FindingKind) *synth {
 	if !read(rng, s, truth, m, e, f) {
 		return nil
 	}
+	if f != nil && f.kind == survey.LevelWrong {
+		for i := range s.Taps {
+			if s.Taps[i].Name == f.item {
+				f.size = s.Taps[i].Elevation - truth.Taps[i].Elevation
+			}
+		}
+	}
 	if f != nil {
 		sound := clone(truth)
 		unspoil(sound, s, f)
