@@ -4,9 +4,9 @@ import (
 	"math"
 
 	"gonum.org/v1/gonum/mat"
-	"gonum.org/v1/gonum/stat/distuv"
 
 	"tapround/calibrate/friction"
+	"tapround/calibrate/stat"
 )
 
 // Theta is unknown k in its working scale: ln(fitted/expected), or SI.
@@ -83,7 +83,7 @@ func (f *Fit) GlobalP() (p float64, ok bool) {
 	if f.DoF() < 1 {
 		return 0, false
 	}
-	return distuv.ChiSquared{K: float64(f.DoF())}.Survival(f.Phi), true
+	return stat.ChiSquareSurvival(f.Phi, float64(f.DoF())), true
 }
 
 // Redundancy of observation i: the share of an error in it that shows in its own

@@ -3,9 +3,8 @@ package calibrate
 import (
 	"math"
 
-	"gonum.org/v1/gonum/stat/distuv"
-
 	"tapround/calibrate/hydraulic"
+	"tapround/calibrate/stat"
 	"tapround/survey"
 )
 
@@ -139,7 +138,7 @@ func (f *Fit) lossOn(r int, s Stretch, a, b tapHead) Loss {
 	l.Expected = f.expectedLoss(r, s.Way)
 	l.Fitted = f.Drop(r, m.ProbeOf(l.FromTap, hydraulic.Total), m.ProbeOf(l.ToTap, hydraulic.Total))
 	l.Excess = Estimate{Value: l.Measured.Value - l.Expected.Value, SD: math.Hypot(l.Measured.SD, l.Expected.SD)}
-	l.Probability = distuv.UnitNormal.CDF(l.Excess.Value / l.Excess.SD)
+	l.Probability = stat.NormalCDF(l.Excess.Value / l.Excess.SD)
 	return l
 }
 

@@ -5,10 +5,9 @@ import (
 	"math"
 	"sort"
 
-	"gonum.org/v1/gonum/stat/distuv"
-
 	"tapround/calibrate"
 	"tapround/calibrate/hydraulic"
+	"tapround/calibrate/stat"
 	"tapround/survey"
 	"tapround/survey/unit"
 )
@@ -221,57 +220,26 @@ func (d *Diagnosis) near(a *Accepted, p survey.Pipe) bool {
 
 // judge predicts a reading under every live cause and works out what it would tell.
 func judge(worlds []*calibrate.WhatIf, p []float64, names []string, at place) (Next, bool) {
-	mu, sd := make([]float64, len(worlds)), make([]float64, len(worlds))
+	of := make([]stat.Outlook, len(worlds))
 	for k, w := range worlds {
 		e := w.Read(at.probes, at.weights)
 		if math.IsNaN(e.SD) {
 			return Next{}, false
 		}
-		mu[k], sd[k] = e.Value, math.Hypot(e.SD, at.noise)
+		of[k] = stat.Outlook{Probability: p[k], Mean: e.Value, Variance: e.SD*e.SD + at.noise*at.noise}
 	}
-	n := Next{Where: at.words, Gain: entropyDrop(p, mu, sd), Likeliest: names[0], OfFlow: at.flow}
+	n := Next{Where: at.words, Gain: stat.EntropyDrop(of), Likeliest: names[0], OfFlow: at.flow}
 	// The likeliest is the first: classes are sorted by their odds.
 	best := -1.0
 	for k := 1; k < len(worlds); k++ {
-		s := math.Sqrt((sd[0]*sd[0] + sd[k]*sd[k]) / 2)
-		if apart := math.Abs(mu[0]-mu[k]) / s; apart > best {
-			best, n.Against, n.Difference = apart, names[k], mu[0]-mu[k]
+		if apart := stat.Separation(of[0], of[k]); apart > best {
+			best, n.Against, n.Difference = apart, names[k], of[0].Mean-of[k].Mean
 		}
 	}
-	n.Settles = 1 - distuv.UnitNormal.CDF(-best/2)
+	// Two laws d apart in units of their common SD are mixed up with a chance of
+	// Phi(-d/2); the separation is d^2/2.
+	n.Settles = stat.NormalCDF(math.Sqrt(2*math.Max(0, best)) / 2)
 	return n, best >= 0
-}
-
-// entropyDrop is the expected fall of the entropy over causes when a reading with laws
-// N(mu_k, sd_k) is taken: the mutual information, by quadrature over each law's
-// central eight standard deviations.
-func entropyDrop(p, mu, sd []float64) float64 {
-	const steps = 80
-	gain := 0.0
-	for k := range p {
-		if p[k] <= 0 {
-			continue
-		}
-		for i := 0; i <= steps; i++ {
-			x := -4 + 8*float64(i)/steps
-			y := mu[k] + x*sd[k]
-			weight := math.Exp(-x*x/2) / math.Sqrt(2*math.Pi) * 8 / steps
-			mix := 0.0
-			own := 0.0
-			for l := range p {
-				z := (y - mu[l]) / sd[l]
-				v := math.Exp(-z*z/2) / sd[l]
-				mix += p[l] * v
-				if l == k {
-					own = v
-				}
-			}
-			if own > 0 && mix > 0 {
-				gain += p[k] * weight * math.Log(own/mix)
-			}
-		}
-	}
-	return math.Max(0, gain)
 }
 
 // Sentence says it as the crew would want to hear it.

@@ -6,6 +6,7 @@ import (
 	"sort"
 
 	"tapround/calibrate/hydraulic"
+	"tapround/calibrate/stat"
 	"tapround/survey"
 	"tapround/survey/unit"
 )
@@ -16,36 +17,35 @@ func (d *Diagnosis) hints() []survey.Finding {
 	if len(d.Accepted) > 0 || !d.Sound.Converged {
 		return nil // after a large fault the small z of the sound fit mean nothing
 	}
-	type item struct {
-		i int
-		p float64
-	}
-	var list []item
+	var index []int
+	var ps []float64
 	for i, c := range d.Causes {
 		// What passes the limit and was not accepted has been weighed by the search.
 		if d.Z[i] == 0 || c.Kind == misread || math.Abs(d.Z[i]) > d.Limit {
 			continue
 		}
-		p := math.Erfc(math.Abs(d.Z[i]) / math.Sqrt2)
+		p := 2 * stat.NormalCDF(-math.Abs(d.Z[i]))
 		if s := float64(c.Unknown.Sign); s != 0 {
-			p = 0.5 * math.Erfc(d.Z[i]*s/math.Sqrt2)
+			p = stat.NormalCDF(-d.Z[i] * s)
 		}
-		list = append(list, item{i, p})
+		index, ps = append(index, i), append(ps, p)
 	}
-	sort.SliceStable(list, func(a, b int) bool { return list[a].p < list[b].p })
-	last := -1
-	for r := range list {
-		if list[r].p <= 0.10*float64(r+1)/float64(len(list)) {
-			last = r
-		}
+	listed := stat.BenjaminiHochberg(ps, 0.10)
+	order := make([]int, len(ps))
+	for r := range order {
+		order[r] = r
 	}
+	sort.SliceStable(order, func(a, b int) bool { return ps[order[a]] < ps[order[b]] })
 	var out []survey.Finding
-	for r := 0; r <= last && r < 3; r++ {
-		c := d.Causes[list[r].i]
+	for _, r := range order {
+		if !listed[r] || len(out) == 3 {
+			break
+		}
+		c := d.Causes[index[r]]
 		out = append(out, survey.Finding{Kind: c.Kind, Item: c.Item, Grade: survey.Hint,
-			Statistic: d.Z[list[r].i] * d.Z[list[r].i], Limit: d.Limit * d.Limit,
+			Statistic: d.Z[index[r]] * d.Z[index[r]], Limit: d.Limit * d.Limit,
 			Statement: fmt.Sprintf("Worth a look, no more: the readings lean towards %s, within what chance can do.", plain(c)),
-			Evidence:  []string{fmt.Sprintf("p = %s of a single test, %d causes tested", unit.Significant(list[r].p, 1), d.Tests)},
+			Evidence:  []string{fmt.Sprintf("p = %s of a single test, %d causes tested", unit.Significant(ps[r], 1), d.Tests)},
 			Advice:    "Nothing to do now; read it again next round."})
 	}
 	return out

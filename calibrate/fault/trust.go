@@ -5,9 +5,9 @@ import (
 	"math"
 
 	"gonum.org/v1/gonum/mat"
-	"gonum.org/v1/gonum/stat/distuv"
 
 	"tapround/calibrate"
+	"tapround/calibrate/stat"
 	"tapround/survey"
 )
 
@@ -62,7 +62,7 @@ func (d *Diagnosis) LeaveOut() []LeftOut {
 			return
 		}
 		chi := mat.Dot(b, &x)
-		out = append(out, LeftOut{What: what, Name: name, Readings: len(set), ChiSquare: chi, P: distuv.ChiSquared{K: float64(len(set))}.Survival(chi)})
+		out = append(out, LeftOut{What: what, Name: name, Readings: len(set), ChiSquare: chi, P: stat.ChiSquareSurvival(chi, float64(len(set)))})
 	}
 	open := m.OpenRounds()
 	for r, round := range m.Rounds {
@@ -100,11 +100,10 @@ func (d *Diagnosis) predictionCaveats() []string {
 	return out
 }
 
-// Huber's and Tukey's constants: 95 % efficient on normal errors (Huber 1964; Beaton and
-// Tukey 1974).
-const (
-	huberK    = 1.345
-	bisquareC = 4.685
+// Huber's and the bisquare function at 95 % efficiency on normal errors.
+var (
+	huber    = stat.Huber(stat.HuberTuning)
+	bisquare = stat.Bisquare(stat.BisquareTuning)
 )
 
 // robustMove is how far an accepted cause moves, in its own standard uncertainties, when
@@ -123,15 +122,9 @@ func (d *Diagnosis) robustMove() []float64 {
 			return moves
 		}
 		for i := range weight {
-			weight[i] = 1
-			a := math.Abs(r[i])
-			switch {
-			case pass < 4 && a > huberK:
-				weight[i] = huberK / a
-			case pass >= 4 && a < bisquareC:
-				weight[i] = math.Pow(1-math.Pow(a/bisquareC, 2), 2)
-			case pass >= 4:
-				weight[i] = 0
+			weight[i] = huber.Weight(r[i])
+			if pass >= 4 {
+				weight[i] = bisquare.Weight(r[i])
 			}
 		}
 		g, err := d.Model.Refit(unknowns, calibrate.Options{Start: u, FreeCauses: true, Weight: weight})
