@@ -117,9 +117,9 @@ func TestColebrookDerivativeTable(t *testing.T) {
 }
 
 var (
-	reynolds   = []float64{50, 900, 1990, 2010, 2200, 2600, 3000, 3500, 3990, 4010, 6e3, 3e4, 2e5, 1e6, 3e7}
-	rels       = []float64{0, 1e-6, 1e-4, 1e-3, 0.01, 0.05, 0.3, 0.99, 1.01, 30, 1000}
-	lnRe, lnRf = math.Log(2000.0), math.Log(4000.0)
+	reynolds = []float64{50, 900, 1990, 2010, 2200, 2600, 3000, 3500, 3990, 4010, 6e3, 3e4, 2e5, 1e6, 3e7}
+	rels     = []float64{0, 1e-6, 1e-4, 1e-3, 0.01, 0.05, 0.3, 0.99, 1.01, 30, 1000}
+	lnRe     = math.Log(friction.ReLaminar)
 )
 
 // Every region: laminar, join, smooth, rough, and beyond the law's own range.
@@ -176,10 +176,17 @@ func TestLossRises(t *testing.T) {
 	const n = 2000
 	all := append([]float64{1e-9, 1e-5, 2e-4, 2e-3, 5e-3, 0.02, 0.03, 0.1, 1e4}, rels...)
 	for _, rel := range all {
-		last := 0.0
+		const step = (math.Ln2 + 0.4) / n
+		last, before := 0.0, friction.Factor{}
 		for i := range n + 1 {
-			re := math.Exp(lnRe - 0.2 + (lnRf-lnRe+0.4)*float64(i)/n)
+			re := math.Exp(lnRe - 0.2 + step*float64(i))
 			f := friction.DarcyFactor(re, rel)
+			// No step anywhere: f grows by its mean slope, less what the bend at 2,000 and
+			// 4,000 takes (second derivatives below 200 up to k/D 1e4, steps of 5e-4).
+			if grown := math.Log(f.F / before.F); i > 0 && math.Abs(grown-(f.DLnRe+before.DLnRe)/2*step) > 5e-5 {
+				t.Fatalf("k/D %g: ln f steps by %g at Re %g, its slopes are %g and %g", rel, grown, re, before.DLnRe, f.DLnRe)
+			}
+			before = f
 			if loss := f.F * re * re; !(loss > last) {
 				t.Fatalf("k/D %g: the loss falls at Re %g", rel, re)
 			} else {

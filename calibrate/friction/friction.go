@@ -10,7 +10,7 @@
 //
 //	[CW]    C. F. Colebrook, J. Inst. Civ. Eng. 11 (1939) 133: 1/sqrt f = -2 log10(k/(3.7 D) + 2.51/(Re sqrt f))
 //	[Cl]    D. Clamond, Ind. Eng. Chem. Res. 48 (2009) 3665: fourth-order steps settle [CW] in two logarithms
-//	[Ho]    A. S. Householder, The Numerical Treatment of a Single Nonlinear Equation (1970), sec. 4.4: the step
+//	[Ho]    A. S. Householder, The Numerical Treatment of a Single Nonlinear Equation (1970): the step
 //	[HW]    G. S. Williams, A. Hazen, Hydraulic Tables (1905): V = 0.8492 C R^0.63 S^0.54 in SI
 //	[PK]    L. Prandtl and T. von Karman's logarithmic velocity law, as in H. Schlichting, Boundary-Layer Theory, ch. 20
 //	[BC]    J.-C. de Borda (1766) and L. Carnot's loss at a sudden enlargement, any text
