@@ -199,7 +199,7 @@ const (
 	nameRow    vg.Length = 10.5
 	legendRow  vg.Length = 13
 	noteRow    vg.Length = 11
-	panelGap   vg.Length = 7
+	panelGap   vg.Length = 12
 	axisHeight vg.Length = 30
 	edge       vg.Length = 6
 )

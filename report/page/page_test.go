@@ -200,6 +200,21 @@ func TestEverythingIsTold(t *testing.T) {
 			says(f.ID, s)
 		}
 	}
+	// Each finding to act on or to watch has all of it on its own card.
+	cards := map[string]string{}
+	for _, e := range find(es, "article") {
+		cards[e.attr["id"]] = flat(e.text)
+	}
+	for _, f := range r.Findings[:6] {
+		for _, s := range append([]string{f.Statement, f.Advice, f.Settle, string(f.Grade)}, f.Cautions...) {
+			if !strings.Contains(cards[f.ID], flat(s)) {
+				t.Errorf("the card of %s lacks %q", f.ID, s)
+			}
+		}
+	}
+	if h := find(es, "h1")[0].text; h != r.Survey.Title {
+		t.Errorf("the page is headed %q", h)
+	}
 	for _, a := range r.Alerts {
 		says("alert", a.Statement+" "+a.Action)
 		says("alert", a.Evidence)
@@ -221,7 +236,7 @@ func TestEverythingIsTold(t *testing.T) {
 	for _, c := range r.Cautions {
 		says("caution", c)
 	}
-	for _, s := range []string{"9.1 mm (95 %: 6.9 to 12.1)", "13000 GBP a year", "share told by the survey", "3.65 ± 0.17", "tapround v0.9.0", "11.70 (11.5)",
+	for _, s := range []string{"9.1 mm (95 %: 6.9 to 12.1)", "13000 GBP a year", "share told by the survey", "3.65 ± 0.17", "tapround v0.9.0", "11.70 (11.54)",
 		"A 0.13, B 3.6, C 4.2, D 4.4, E 6.2 m", "58 of 61 readings used", "over 99 % for the loss; its cause is open", "unrecorded flow at N7", "221.4 ± 0.6", "Local codes and licensed practice decide."} {
 		says("figure", s)
 	}
@@ -334,12 +349,26 @@ func TestLongTablesAreCutWithAWord(t *testing.T) {
 	}
 }
 
+func TestDrawOffsKeepTheirPlace(t *testing.T) {
+	r := &report.Result{Survey: report.SurveyFacts{Rounds: []string{"A", "B"}}, Parameters: []report.ParameterRow{
+		{Item: "N8", Kind: "draw-off", Quantity: "flow", Unit: "L/s", Round: "B", Expected: survey.Some(0.72), Fitted: survey.Some(4.72), Low: survey.Some(4.2), High: survey.Some(5.24)},
+		{Item: "N9", Kind: "draw-off", Quantity: "flow", Unit: "L/s", Fitted: survey.Some(1.5)},
+		{Item: "P1", Kind: "pipe", Quantity: "roughness", Unit: "mm", Fitted: survey.Some(1.5)}}}
+	got := drawOffs(r)
+	if len(got.Rows) != 2 || got.Rows[0][1].Text != "–" || got.Rows[0][2].Text != "4.72 (0.72)" || got.Rows[1][1].Text != "1.50 (unknown)" || got.Rows[1][2].Text != "1.50 (unknown)" {
+		t.Errorf("%v", got.Rows)
+	}
+	if works, gauges, levels := fitted(r.Parameters); len(works.Rows) != 1 || len(gauges.Rows)+len(levels.Rows) != 0 {
+		t.Errorf("%v", works.Rows)
+	}
+}
+
 func TestFlowsKeepTheirPlace(t *testing.T) {
 	r := &report.Result{Survey: report.SurveyFacts{Rounds: []string{"A", "B"}}, Flows: []report.FlowRow{
 		{Round: "B", Pipe: "P1", Flow: survey.Some(-0.0123), Low: survey.Some(-0.0125), High: survey.Some(-0.0121), Measured: survey.Some(-0.0120)},
 		{Round: "A", Pipe: "P2", Flow: survey.Some(0.5)}}}
 	got := flows(r)
-	if len(got.Rows) != 2 || got.Rows[0][0].Text != "P1" || got.Rows[0][1].Text != "–" || got.Rows[0][2].Text != "-12.30 (-12.0)" || got.Rows[1][1].Text != "500" {
+	if len(got.Rows) != 2 || got.Rows[0][0].Text != "P1" || got.Rows[0][1].Text != "–" || got.Rows[0][2].Text != "-12.30 (-12)" || got.Rows[1][1].Text != "500" {
 		t.Errorf("%v", got.Rows)
 	}
 }

@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"html/template"
 	"strings"
+	"unicode"
+	"unicode/utf8"
 
 	"tapround/report"
 	"tapround/report/figure"
@@ -24,7 +26,7 @@ type view struct {
 	Short     table // found, one row each
 	Sentences []string
 	Steps     []say.Step
-	Unseen    []card
+	Unseen    []unseen
 
 	Cards    []card
 	Hints    []card
@@ -75,6 +77,12 @@ type alert struct {
 	Stay                                      bool
 }
 
+// unseen are items that the readings say nothing of, and the advice they share.
+type unseen struct {
+	Items  []pair
+	Advice string
+}
+
 // drawn is one picture with its words.
 type drawn struct {
 	Caption      string
@@ -104,15 +112,15 @@ func newView(r *report.Result) *view {
 	v.findings(r)
 	v.pictures(r.Profiles)
 	v.Losses, v.LossNote = losses(r.Losses)
-	v.Fitted, v.Gauges, v.Levels, v.DrawOffs = fitted(r.Parameters)
-	v.Flows = flows(r)
+	v.Fitted, v.Gauges, v.Levels = fitted(r.Parameters)
+	v.Flows, v.DrawOffs = flows(r), drawOffs(r)
 	v.data(r)
 	v.method(r)
 	return v
 }
 
 func (v *view) findings(r *report.Result) {
-	found, hints, unseen := say.Split(r.Findings)
+	found, hints, blind := say.Split(r.Findings)
 	v.Short = table{Caption: "What was found, the best supported first", Head: heads("", "What", "Where", "How sure", "Costs")}
 	for _, f := range found {
 		v.Short.add(link(f.ID), text(capital(say.Kind(f.Kind))), text(say.Where(f)), text(grade(f)), text(orDash(costs(r, f))))
@@ -121,8 +129,12 @@ func (v *view) findings(r *report.Result) {
 	for _, f := range hints {
 		v.Hints = append(v.Hints, newCard(r, f))
 	}
-	for _, f := range unseen {
-		v.Unseen = append(v.Unseen, newCard(r, f))
+	for _, f := range blind {
+		if n := len(v.Unseen); n == 0 || v.Unseen[n-1].Advice != say.Clean(f.Advice) {
+			v.Unseen = append(v.Unseen, unseen{Advice: say.Clean(f.Advice)})
+		}
+		last := &v.Unseen[len(v.Unseen)-1]
+		last.Items = append(last.Items, pair{f.ID, say.Clean(f.Statement)})
 	}
 	// A sentence of the summary that a finding says itself stands with the finding.
 	said := map[string]bool{}
@@ -138,9 +150,7 @@ func (v *view) findings(r *report.Result) {
 		v.Sentences = []string{"Nothing was found that sound works, sound gauges and recorded levels would not explain."}
 	}
 	v.Steps = say.Steps(found)
-	for _, c := range r.Cautions {
-		v.Cautions = append(v.Cautions, say.Clean(c))
-	}
+	v.Cautions = say.Cautions(r.Cautions)
 }
 
 // grade is a finding's grade with its probability, short.
@@ -171,7 +181,7 @@ func costs(r *report.Result, f survey.Finding) string {
 
 func newCard(r *report.Result, f survey.Finding) card {
 	c := card{ID: f.ID, Kind: capital(say.Kind(f.Kind)), Where: say.Where(f), Grade: say.Clean(string(f.Grade)), Statement: say.Clean(f.Statement),
-		Evidence: cleaned(f.Evidence), Rivals: cleaned(f.Rivals), Advice: say.Clean(f.Advice), Settle: say.Clean(f.Settle), Cautions: cleaned(f.Cautions)}
+		Evidence: sentences(f.Evidence), Rivals: sentences(f.Rivals), Advice: say.Clean(f.Advice), Settle: say.Clean(f.Settle), Cautions: say.Cautions(f.Cautions)}
 	line := func(name, value string) {
 		if value != "" {
 			c.Lines = append(c.Lines, pair{name, value})
@@ -187,7 +197,11 @@ func newCard(r *report.Result, f survey.Finding) card {
 		by = append(by, say.Clean(e.Round)+" "+unit.Significant(e.Value, 2))
 	}
 	if len(by) > 0 {
-		line("Head it costs, by round", strings.Join(by, ", ")+" m")
+		name := "Head it costs, by round"
+		if !say.LosesHead(f.Kind) {
+			name = "Changes heads, by round"
+		}
+		line(name, strings.Join(by, ", ")+" m")
 	}
 	for _, k := range r.Costs {
 		if k.Finding == f.ID {
@@ -202,11 +216,7 @@ func newCard(r *report.Result, f survey.Finding) card {
 	if f.Kind == survey.CauseOpen {
 		c.Lines[len(c.Lines)-1].Name = "Could be"
 	}
-	var places []string
-	for _, s := range f.Sources {
-		places = append(places, say.Clean(s.String()))
-	}
-	c.Sources = strings.Join(places, ", ")
+	c.Sources = say.Places(f.Sources)
 	return c
 }
 
@@ -228,11 +238,21 @@ func cleaned(ss []string) []string {
 	return out
 }
 
+func sentences(ss []string) []string {
+	var out []string
+	for _, s := range ss {
+		out = append(out, capital(say.Clean(s)))
+	}
+	return out
+}
+
+// capital begins a sentence.
 func capital(s string) string {
-	if s == "" {
+	r, n := utf8.DecodeRuneInString(s)
+	if n == 0 {
 		return s
 	}
-	return strings.ToUpper(s[:1]) + s[1:]
+	return string(unicode.ToUpper(r)) + s[n:]
 }
 
 func orDash(s string) string {

@@ -85,13 +85,7 @@ func (p *printer) mark(s survey.Severity) string {
 // place is where: "taps.csv lines 3-5, elevation "12,5x"".
 func place(file string, lines []int, column, text string) string {
 	var b strings.Builder
-	b.WriteString(file)
-	switch {
-	case len(lines) == 1 && lines[0] > 0:
-		fmt.Fprintf(&b, " line %d", lines[0])
-	case len(lines) > 1:
-		b.WriteString(" lines " + say.Lines(lines))
-	}
+	b.WriteString(say.Place(file, lines))
 	if column != "" {
 		b.WriteString(", " + column)
 	}
@@ -144,9 +138,5 @@ func (p *printer) alert(a survey.Alert) {
 	label("do", a.Action)
 	label("seen", a.Evidence)
 	label("limit", a.Limit)
-	var places []string
-	for _, s := range a.Sources {
-		places = append(places, s.String())
-	}
-	label("in", strings.Join(places, ", "))
+	label("in", say.Places(a.Sources))
 }

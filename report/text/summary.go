@@ -167,8 +167,16 @@ func (p *printer) quality(r *report.Result) {
 	p.para("", fmt.Sprintf("%d of %s used; %s set aside; %s.", r.Survey.Used, say.Plural(r.Survey.Readings, "reading", "readings"),
 		say.Plural(len(aside), "row", "rows"), say.Plural(len(notices), "notice", "notices")), 2)
 	p.problems(aside)
+	others := 0
 	for _, a := range r.Alerts {
-		p.para("  "+p.ink(yellow, "!"), say.Clean(a.Statement)+" "+say.Clean(a.Action), 4)
+		if !a.Stay {
+			others++
+			continue
+		}
+		p.para("  "+p.ink(red, "!"), say.Clean(a.Statement)+" "+say.Clean(a.Action), 4)
+	}
+	if others > 0 {
+		p.para("  "+p.ink(yellow, "!"), say.Plural(others, "further remark", "further remarks")+" on the readings: report.html has them, and so does the check command.", 4)
 	}
 }
 
@@ -177,8 +185,8 @@ func (p *printer) cautions(r *report.Result) {
 		return
 	}
 	p.heading("Before anybody works on site")
-	for _, c := range r.Cautions {
-		p.para("  -", say.Clean(c), 4)
+	for _, c := range say.Cautions(r.Cautions) {
+		p.para("  -", c, 4)
 	}
 }
 

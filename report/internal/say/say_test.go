@@ -141,3 +141,29 @@ func TestMoney(t *testing.T) {
 		t.Errorf("%q", got)
 	}
 }
+
+func TestCost(t *testing.T) {
+	ex := []survey.AtRound{{Round: "A", Value: -0.1}, {Round: "E", Value: 6.24}}
+	if got := Cost(survey.Finding{Kind: survey.FouledPipe, Excess: ex}); got != "6.2 m in E" {
+		t.Errorf("%q", got)
+	}
+	// What a wrong level does to the heads costs nobody anything.
+	if got := Cost(survey.Finding{Kind: survey.LevelWrong, Excess: ex}); got != "" {
+		t.Errorf("%q", got)
+	}
+}
+
+func TestCautions(t *testing.T) {
+	got := Cautions([]string{"a", "Local codes and licensed practice decide.", "b"})
+	if len(got) != 3 || got[1] != "b" || got[2] != "Local codes and licensed practice decide." {
+		t.Errorf("%q", got)
+	}
+}
+
+func TestPlaces(t *testing.T) {
+	at := func(f string, l int) survey.Source { return survey.Source{File: f, Line: l} }
+	got := Places([]survey.Source{at("a.csv", 3), at("b.csv", 2), at("a.csv", 4), at("c.csv", 0), at("a.csv", 9)})
+	if got != "a.csv lines 3-4, 9; b.csv line 2; c.csv" {
+		t.Errorf("%q", got)
+	}
+}
