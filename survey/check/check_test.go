@@ -139,6 +139,16 @@ func only(t *testing.T, s *survey.Survey, rule, subject string) survey.Alert {
 	return a
 }
 
+// one wants exactly one alert of the rule, whatever else is said.
+func one(t *testing.T, s *survey.Survey, rule, subject string) survey.Alert {
+	t.Helper()
+	as := first(look(s), rule)
+	if len(as) != 1 || as[0].Subject != subject {
+		t.Fatalf("want one [%s], of %s, got\n%s", rule, subject, text(look(s)))
+	}
+	return as[0]
+}
+
 func quiet(t *testing.T, what string, s *survey.Survey) {
 	t.Helper()
 	if as := look(s); len(as) > 0 {

@@ -115,6 +115,14 @@ func TestClosureNeedsRest(t *testing.T) {
 		"another reservoir":     {func(s *survey.Survey) { s.Points[3].Kind = survey.Reservoir }, false},
 		"an outlet":             {func(s *survey.Survey) { s.Points[3].Kind = survey.Outlet }, false},
 		"a machine":             {func(s *survey.Survey) { s.Machines = []survey.Machine{{Name: "M1", From: "N3", To: "N1"}} }, false},
+		"a machine feeding in": {func(s *survey.Survey) {
+			s.Points = append(s.Points, survey.Point{Name: "N9", Kind: survey.Junction})
+			s.Machines = []survey.Machine{{Name: "M1", From: "N9", To: "N1"}}
+		}, false},
+		"a machine drawing": {func(s *survey.Survey) {
+			s.Points = append(s.Points, survey.Point{Name: "N9", Kind: survey.Junction})
+			s.Machines = []survey.Machine{{Name: "M1", From: "N1", To: "N9"}}
+		}, false},
 		"a stopped machine": {func(s *survey.Survey) {
 			s.Machines = []survey.Machine{{Name: "M1", From: "N3", To: "N1"}}
 			condition("A", "M1", survey.Stopped, survey.Maybe{})(s)
@@ -186,6 +194,11 @@ func TestNothingFlows(t *testing.T) {
 	says(t, only(t, s, doesNotClose, "T3").Statement, "difference")
 	s.Readings[len(s.Readings)-1].Value = 100
 	quiet(t, "a difference of 0.01 m", s)
+	// Behind a shut valve the other tap may stand at any head.
+	s.Readings[len(s.Readings)-1].Value = 900
+	s.Fittings = []survey.Fitting{{Name: "V1", Pipe: "P2", At: 250, Kind: survey.GateValve}}
+	s.Conditions = append(s.Conditions, survey.Condition{Round: "A", Item: "V1", Kind: survey.ShutOff})
+	quiet(t, "a difference over a shut valve", s)
 }
 
 // The size of a suspect and its standard uncertainty, against the plain estimate: with

@@ -283,3 +283,100 @@ func TestAboveRest(t *testing.T) {
 		}
 	}
 }
+
+func TestPlaceOfTaps(t *testing.T) {
+	s := site()
+	s.Pipes[2].Bore = 0.3
+	s.Taps = append(s.Taps, survey.Tap{Name: "M", Point: "M1"})
+	v := newView(s, nil, customary)
+	for tap, want := range map[string]struct {
+		pipe string
+		at   float64
+	}{"T3": {"P2", 100}, "T2": {"P1", 500}, "T5": {"P3", 0}, "T6": {"P3", 500}} {
+		if pipe, at, ok := v.place(tap); !ok || pipe != want.pipe || at != want.at {
+			t.Errorf("%s reads on %s at %v, want %+v", tap, pipe, at, want)
+		}
+	}
+	if _, _, ok := v.place("M"); ok {
+		t.Error("a point without a pipe has one")
+	}
+	// A meter at a point counts on the widest pipe there.
+	*tap(s, "Q2") = survey.Tap{Name: "Q2", Point: "N2"}
+	reading(s, "B", "Q1").Value = 0.045
+	says(t, only(t, s, unbalanced, "Q1 Q2").Statement, "5.0 ± 0.4 L/s")
+}
+
+func TestStretchesStopAtJunctions(t *testing.T) {
+	for what, alter := range map[string]func(*survey.Survey){
+		"as it is": func(*survey.Survey) {},
+		"a branch": func(s *survey.Survey) {
+			s.Points = append(s.Points, survey.Point{Name: "N9", Kind: survey.Junction})
+			s.Pipes = append(s.Pipes, survey.Pipe{Name: "P9", From: "N2", To: "N9", Length: 10, Bore: 0.2})
+		},
+		"a machine": func(s *survey.Survey) {
+			s.Machines = []survey.Machine{{Name: "M1", From: "N2", To: "N1", Kind: survey.Pump}}
+			s.Conditions = append(s.Conditions, survey.Condition{Round: "*", Item: "M1", Kind: survey.Stopped})
+		},
+	} {
+		s := site()
+		alter(s)
+		shift(s, "B", "T5", 1.5)
+		if found := first(look(s), risesAlongFlow); (len(found) == 1) != (what == "as it is") {
+			t.Errorf("%s: %s", what, text(found))
+		}
+	}
+}
+
+// Losses are looked for only where water flows, and by the surest pair of readings.
+func TestLossesOfARound(t *testing.T) {
+	s := site()
+	s.Readings = s.Readings[:0:0]
+	for i := range 6 {
+		show(s, "A", s.Taps[i].Name, s.Gauges[i].Name, 100)
+	}
+	quiet(t, "a survey with nothing flowing", s)
+
+	s = site()
+	shift(s, "B", "T4", 3.5)
+	show(s, "B", "T4", "G3", 94.3) // the gauge that T3 was read with
+	show(s, "B", "T4", "G6", 94.4)
+	a := first(look(s), risesAlongFlow)
+	if len(a) != 1 {
+		t.Fatalf("got\n%s", text(look(s)))
+	}
+	says(t, a[0].Evidence, "rise 0.30 ± 0.05 m")
+
+	// Pitots at two depths see two velocity heads.
+	total := func(depth float64) *survey.Survey {
+		s := site()
+		for _, x := range []struct {
+			tap, gauge  string
+			head, depth float64
+		}{{"T3", "G3", 94, 0.1}, {"T4", "G4", 94.5, depth}} {
+			reading(s, "B", x.tap).SetAside = "not in this test"
+			r := show(s, "B", x.tap, x.gauge, x.head)
+			r.Kind, r.Depth = survey.TotalHead, survey.Some(x.depth)
+		}
+		return s
+	}
+	if found := first(look(total(0.1)), risesAlongFlow); len(found) != 1 {
+		t.Errorf("one depth: %s", text(found))
+	}
+	if found := first(look(total(0.05)), risesAlongFlow); len(found) != 0 {
+		t.Errorf("two depths: %s", text(found))
+	}
+}
+
+func TestAboveRestAllowsForLevels(t *testing.T) {
+	s := site()
+	shift(s, "B", "T1", 2.9)
+	s.Machines = []survey.Machine{{Name: "M1", From: "R1", To: "N1", Kind: survey.Turbine}} // takes head, gives none
+	s.Conditions = append(s.Conditions, survey.Condition{Round: "A", Item: "M1", Kind: survey.Stopped})
+	if found := first(look(s), aboveRestR); len(found) != 1 {
+		t.Errorf("beside a turbine: %s", text(look(s)))
+	}
+	s = site()
+	shift(s, "B", "T1", 2.9)
+	s.Conditions = append(s.Conditions, survey.Condition{Round: "B", Item: "R1", Kind: survey.LevelIs, Value: survey.Some(100), SD: survey.Some(0.3)})
+	quiet(t, "a level of ±0.3 m", s)
+}

@@ -29,8 +29,9 @@ func high(s *survey.Survey, name, gauge string, z float64) {
 
 func TestNotFull(t *testing.T) {
 	s := site()
-	high(s, "T4", "G4", 92.5) // 1.5 m above the piezometric head of 91 m in round B
-	a := only(t, s, belowPipe, "T4")
+	tap(s, "T4").ElevationSD = 0.8 // cancels: both pressures are the tap's own
+	high(s, "T4", "G4", 92.5)      // 1.5 m above the piezometric head of 91 m in round B
+	a := one(t, s, belowPipe, "T4")
 	says(t, a.Statement, "stands below tap T4 in round B")
 	says(t, a.Evidence, "by 1.50 ± 0.06 m")
 	says(t, a.Action, "Do not use these readings for roughness", "Local codes and licensed practice decide")
@@ -70,6 +71,15 @@ func TestNotFullOnTheLongSection(t *testing.T) {
 	if a.Sources[len(a.Sources)-1].File != "levels.csv" {
 		t.Errorf("sources %v", a.Sources)
 	}
+	// Nearer to T4 (91 m) than to T3 (94 m); both with one gauge, whose error stays in full.
+	s = site()
+	s.Gauges[3].Accuracy = survey.Some(0.01)
+	for _, r := range []string{"A", "B"} {
+		reading(s, r, "T3").Gauge = "G4"
+	}
+	s.Levels = []survey.Level{{Pipe: "P2", At: 340, Elevation: 93.6}}
+	says(t, one(t, s, belowPipe, "P2").Evidence, "by 2.0 ± 0.6 m")
+
 	// Beyond the last reading of the pipe nothing is said: T5 and T6 stand either side.
 	s = site()
 	s.Levels = []survey.Level{{Pipe: "P3", At: 250, Elevation: 89}}

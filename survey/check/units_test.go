@@ -196,12 +196,30 @@ func TestExchangedReadings(t *testing.T) {
 	shift(s, "A", "T5", 2) // T6 stands 2 m lower and T2 2 m higher than T5
 	only(t, s, doesNotClose, "T5")
 
+	// Nor where the neighbour's level is so rough that it could take the error over.
+	s = site()
+	high := tap(s, "T6")
+	for _, r := range []string{"A", "B"} {
+		shift(s, r, "T6", high.Elevation-38)
+	}
+	high.Elevation, high.ElevationSD = 38, 0.5
+	shift(s, "A", "T5", 0.8)
+	only(t, s, doesNotClose, "T5")
+
 	// Two that are off by as much, but not by what lies between them.
 	s = site()
 	shift(s, "A", "T3", 1)
 	shift(s, "A", "T6", -1)
 	if found := first(look(s), exchangedRule); len(found) != 0 {
 		t.Errorf("got\n%s", text(found))
+	}
+
+	// Beside a far larger fault the exchange is no more than part of it, and comes after.
+	s = site()
+	exchange(s, true)
+	shift(s, "A", "T1", 30)
+	if as := look(s); len(as) != 2 || as[0].Subject != "T1" || as[1].Rule != exchangedRule {
+		t.Errorf("got\n%s", text(as))
 	}
 
 	// An exchange beside another fault: both are named.
