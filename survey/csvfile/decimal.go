@@ -9,6 +9,9 @@ type marks struct {
 	delim byte
 	// point and comma: a cell was seen that can only be read with that decimal mark.
 	point, comma bool
+	// open is the first cell like 1.500, which would be for thousands if anything in
+	// the file said so.
+	open string
 }
 
 // name says it for Input.Understood.
@@ -35,11 +38,14 @@ func (m *marks) see(cell string) {
 		parts = rangeEnds(cell)
 	}
 	for _, part := range parts {
-		switch n, _ := parseShape(part); n.decimal {
-		case '.':
+		n, _ := parseShape(part)
+		switch {
+		case n.decimal == '.':
 			m.point = true
-		case ',':
+		case n.decimal == ',':
 			m.comma = m.delim != ','
+		case n.open == '.' && m.open == "":
+			m.open = part
 		}
 	}
 }

@@ -8,6 +8,7 @@ import (
 	"io"
 	"io/fs"
 	"path"
+	"slices"
 	"sort"
 	"strings"
 	"time"
@@ -47,13 +48,20 @@ func ReadFolder(fsys fs.FS) (*survey.Survey, survey.Problems) {
 		for _, name := range files {
 			rows += f.file(sp, name)
 		}
-		if rows == 0 && len(files) > 0 && sp.required && !sp.mayBeEmpty && !f.problems.Fatal() {
+		if rows == 0 && len(files) > 0 && sp.required && !sp.mayBeEmpty && !f.refused(files) {
 			f.tell(files[0], survey.Fatal, "the table has no rows: "+sp.missing, "write its rows")
 		}
 	}
 	f.strangers(specs, found)
 	sort.SliceStable(f.problems, func(i, j int) bool { return f.problems[i].Severity > f.problems[j].Severity })
 	return f.survey, f.problems
+}
+
+// refused reports whether an error was told of one of the files.
+func (f *folder) refused(files []string) bool {
+	return slices.ContainsFunc(f.problems, func(p survey.Problem) bool {
+		return p.Severity == survey.Fatal && slices.Contains(files, p.File)
+	})
 }
 
 func (f *folder) tell(file string, sev survey.Severity, reason, remedy string) {
@@ -161,10 +169,10 @@ func (f *folder) strangers(specs []spec, found map[string][]string) {
 	sort.Strings(odd)
 	for _, name := range odd {
 		remedy := "the tables are " + strings.Join(names, ", ")
-		if n := survey.Nearest(name, names); n != "" {
-			remedy = fmt.Sprintf("did you mean %s? Then rename it", n)
-		} else if strings.HasPrefix(plainFile(name), "reading") {
+		if strings.HasPrefix(plainFile(name), "reading") {
 			remedy = "put further readings into the folder readings"
+		} else if n := survey.Nearest(name, names); n != "" {
+			remedy = fmt.Sprintf("did you mean %s? Then rename it", n)
 		}
 		f.tell(name, survey.Notice, "is not the name of a table, and was not read", remedy)
 	}
@@ -188,7 +196,7 @@ func (f *folder) file(sp spec, name string) int {
 		return 0
 	}
 	in.Understood = d.encoding
-	sh := &sheet{folder: f, spec: sp, file: name, names: map[string]int{}, notices: map[string]*tally{}}
+	sh := &sheet{folder: f, spec: sp, file: name, names: map[string]int{}, notices: map[string]*tally{}, orphans: map[string]bool{}}
 	if d.odd > 0 {
 		sh.problem(d.odd, survey.Notice, "", d.oddLine, d.reason, d.remedy)
 	}

@@ -92,6 +92,7 @@ func (sh *sheet) readHeading(heading record) {
 	var unknown []string
 	for at, cell := range heading.cells {
 		if cell == "" {
+			sh.unnamed(heading.line, at)
 			continue
 		}
 		name, u, bracket := cutUnit(cell)
@@ -199,6 +200,16 @@ func (sh *sheet) unknownColumn(line int, cell string) {
 		remedy = fmt.Sprintf("the nearest known heading is %s", sh.spec.columns[sh.spec.words[fold(n)]].heading())
 	}
 	sh.problem(line, survey.Notice, oneLine(cell), "", "the heading is not known; the column was not read", remedy)
+}
+
+// unnamed tells of a column without a heading that holds something.
+func (sh *sheet) unnamed(line, at int) {
+	for _, rec := range sh.body {
+		if at < sh.width && at < len(rec.cells) && rec.cells[at] != "" {
+			sh.problem(line, survey.Notice, "", rec.cells[at], fmt.Sprintf("column %d holds values but has no heading; it was not read", at+1), "give it a heading, or take it away")
+			return
+		}
+	}
 }
 
 // oneLine puts a heading that was broken over lines on one.

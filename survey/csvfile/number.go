@@ -14,6 +14,7 @@ type misread struct {
 	// unclear: the cell is a number in two ways, and which one is not for the
 	// reader to choose.
 	unclear bool
+	none    bool // the cell says that there is no value
 }
 
 // number reads a cell by the decimal mark of its file. grouped tells that thousands
@@ -132,7 +133,7 @@ func whyNoNumber(s string) *misread {
 	case strings.HasPrefix(s, "#"):
 		return &misread{reason: "is a spreadsheet's error mark", remedy: "mend the formula, or leave the cell empty"}
 	case is("n/a", "na", "n.a", "-", "--", "---", "\u2013", "\u2014", "none", "nil", "x", "nr", "no reading", "missing", "?"):
-		return &misread{reason: "says that there is no value", remedy: "leave the cell empty where nothing is known"}
+		return &misread{reason: "says that there is no value", remedy: "leave the cell empty where nothing is known", none: true}
 	case is("hi", "high", "lo", "low", "ol", "o/l", "o.l", "over", "under", "overrange", "over range", "over-range", "off scale", "full scale", "err", "error", "fault", "fail"):
 		return &misread{reason: "says that the instrument was off its scale or at fault", remedy: "read it again with an instrument of the right range"}
 	case strings.IndexAny(low[:1], "<>") == 0 || strings.HasPrefix(s, "\u2264") || strings.HasPrefix(s, "\u2265"):

@@ -65,7 +65,7 @@ func (m *mender) cell() {
 	s := m.s
 	open := m.skipSpaces(m.at)
 	if open < len(s) && s[open] == '"' {
-		if end := m.skipSpaces(open + 1); m.endsCell(end) {
+		if end := m.skipSpaces(open + 1); m.endsCell(end) && !m.closedInText(end) {
 			m.out.WriteString(`""""`) // a lone mark
 			m.at = end
 			return
@@ -88,6 +88,19 @@ func (m *mender) cell() {
 	}
 	m.out.WriteString(cell)
 	m.at = end
+}
+
+// closedInText tells a quoted cell that begins with the delimiter, as in ", steady",
+// from two lone marks with cells between them: the next mark of the line ends a cell
+// that has text before it.
+func (m *mender) closedInText(at int) bool {
+	line := m.s[at:lineEnd(m.s, at)]
+	next := strings.IndexByte(line, '"')
+	if next < 0 || !m.endsCell(m.skipSpaces(at+next+1)) {
+		return false
+	}
+	before := strings.TrimRight(line[:next], " ")
+	return before != "" && before[len(before)-1] != m.delim
 }
 
 // closing gives the place behind the mark that closes the one at open, and whether

@@ -90,7 +90,10 @@ func (r *row) reading(cell string, u unit.Unit) (value, half float64) {
 		r.fail("reading", cell, "is what instruments write for no reading", "if it was read off the gauge, write it with one more decimal: "+cell+".0")
 		return in(unit.Unit{}, 0), 0
 	}
-	ends := rangeEnds(cell)
+	ends := []string{cell}
+	if _, ok := parseShape(cell); !ok {
+		ends = rangeEnds(cell)
+	}
 	if len(ends) == 1 {
 		return in(u, r.number("reading", cell)), 0
 	}

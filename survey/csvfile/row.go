@@ -24,7 +24,7 @@ type row struct {
 
 // tell makes a problem of a cell.
 func (r *row) tell(sev survey.Severity, column, cell, reason, remedy string) {
-	if r.muted {
+	if r.muted || r.orphans[column] && r.at.Line == r.body[0].line {
 		return
 	}
 	if sev != survey.Notice && r.bad == "" {
@@ -50,14 +50,13 @@ func (sh *sheet) heading(column string) string {
 	return column
 }
 
-// checkWidth compares a row with the heading. Empty cells beyond the heading are what
-// spreadsheets add; anything else means that cells stand in the wrong columns.
+// checkWidth compares a row with the heading. It must have as many cells, or as many as
+// the heading has words where the heading's line is filled up with empty ones. Empty
+// cells too many are no matter of form: a decimal comma between commas pushes the rest
+// of its row one cell on, and out of the table falls an empty note.
 func (r *row) checkWidth(cells []string) {
 	n := len(cells)
-	for n > r.width && cells[n-1] == "" {
-		n--
-	}
-	if n == r.width {
+	if n == r.width || n == r.padded && (record{cells: cells[r.width:]}).blank() {
 		return
 	}
 	remedy := "fill up or take away cells until the row fits the heading; an empty cell needs its delimiter too"
@@ -100,6 +99,9 @@ func (r *row) number(column, cell string) float64 {
 		if bad.unclear {
 			r.tell(survey.Fatal, column, cell, bad.reason, bad.remedy)
 		} else {
+			if bad.none && column == "reading" {
+				bad.remedy = "read it again; if that is not possible nothing needs mending"
+			}
 			r.fail(column, cell, bad.reason, bad.remedy)
 		}
 		return math.NaN()
@@ -160,7 +162,7 @@ func (r *row) neededIn(column, cell string, u unit.Unit) float64 {
 
 func (r *row) absent(column string) {
 	if !r.headed(column).broken {
-		r.fail(column, "", "is empty, and every row needs a number here", "write the number; 0 where it is nought")
+		r.fail(column, "", "is empty, and a number is needed here", "write the number")
 	}
 }
 

@@ -16,11 +16,15 @@ import (
 // sheet is one table while it is read.
 type sheet struct {
 	*folder
-	spec     spec
-	file     string
-	cols     []headed // one for each of spec.columns
-	body     []record
-	width    int // cells of the heading
+	spec   spec
+	file   string
+	cols   []headed // one for each of spec.columns
+	body   []record
+	width  int // cells of the heading up to its last word
+	padded int // cells of the heading's line
+	// orphans are the columns with a ditto mark in the first row: told once, and not
+	// again as a word that is not known.
+	orphans  map[string]bool
 	marks    marks
 	names    map[string]int // line of each name in the first column
 	problems survey.Problems
@@ -110,6 +114,9 @@ func (sh *sheet) weigh() {
 		sh.problem(0, survey.Notice, "", "", "numbers of this file have decimal points in some rows and decimal commas in others; each was read by its own mark",
 			"use one decimal mark in a file")
 	}
+	if m := sh.marks; m.open != "" && m.delim != ',' && !m.point && !m.comma {
+		sh.problem(0, survey.Notice, "", m.open, "was read as a decimal number; nothing in the file says whether its point is for thousands", "write numbers without thousands marks")
+	}
 }
 
 // feed hands rows that were checked before to gocsv.
@@ -150,7 +157,8 @@ func (sh *sheet) inOrder() *feed {
 			cell := rec.cells[h.at]
 			if col.kind == text && isDitto(cell) {
 				if i == 0 {
-					sh.problem(rec.line, sh.spec.rowFault, h.written, cell, "is a ditto mark with no row above it", "write the word itself")
+					sh.problem(rec.line, sh.spec.rowFault, h.written, cell, noneAbove, "write the word itself")
+					sh.orphans[col.name] = true
 				} else {
 					cell = out[i][c]
 					sh.note(rec.line, h.written, rec.cells[h.at], "is a ditto mark; it was read as the cell above", "")
@@ -161,6 +169,8 @@ func (sh *sheet) inOrder() *feed {
 	}
 	return &out
 }
+
+const noneAbove = "is a ditto mark with no row above it"
 
 // rowsOf decodes the rows of a sheet into T, a struct of strings with one csv tag for
 // each column of the table, and yields each with the row it came from.
@@ -174,6 +184,9 @@ func rowsOf[T any](sh *sheet) iter.Seq2[*row, T] {
 		}
 		for i, t := range typed {
 			r := &row{sheet: sh, at: survey.Source{File: sh.file, Line: sh.body[i].line}}
+			if i == 0 && len(sh.orphans) > 0 {
+				r.bad = noneAbove
+			}
 			r.checkWidth(sh.body[i].cells)
 			if !yield(r, t) {
 				return
@@ -204,7 +217,8 @@ func (sh *sheet) take(text string, in *survey.Input) {
 	}
 	sh.preamble(records[:top])
 	sh.body = sh.withoutRepeats(records[top+1:], records[top])
-	for sh.width = len(records[top].cells); records[top].cells[sh.width-1] == ""; sh.width-- {
+	sh.padded = len(records[top].cells)
+	for sh.width = sh.padded; records[top].cells[sh.width-1] == ""; sh.width-- {
 	}
 	sh.marks = marks{delim: delim}
 	sh.readHeading(records[top])

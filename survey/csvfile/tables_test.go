@@ -1,0 +1,306 @@
+package csvfile
+
+import (
+	"fmt"
+
+	"io/fs"
+	"math"
+	"reflect"
+	"slices"
+	"strings"
+	"testing"
+	"testing/fstest"
+	"time"
+
+	"tapround/survey"
+)
+
+// rowTypes are the structs that gocsv fills, by table.
+var rowTypes = map[string]any{
+	"survey.csv": infoRow{}, "points.csv": pointRow{}, "pipes.csv": pipeRow{}, "levels.csv": levelRow{}, "fittings.csv": fittingRow{},
+	"machines.csv": machineRow{}, "duty.csv": dutyRow{}, "taps.csv": tapRow{}, "gauges.csv": gaugeRow{}, "gauge_checks.csv": checkRow{},
+	"rounds.csv": roundRow{}, "conditions.csv": conditionRow{}, "readings.csv": readingRow{}, "requirements.csv": requirementRow{}, "loggers.csv": loggerRow{},
+}
+
+// gocsv leaves a field without a column at its zero and drops a column without a field,
+// both in silence: the row types must have exactly the columns of their tables, and
+// strings only, since its numbers turn an empty cell into 0.
+func TestRowTypesFitTheTables(t *testing.T) {
+	specs := tables()
+	if len(specs) != len(rowTypes) {
+		t.Fatalf("%d tables, %d row types", len(specs), len(rowTypes))
+	}
+	for _, sp := range specs {
+		typ := reflect.TypeOf(rowTypes[sp.file])
+		if typ == nil {
+			t.Errorf("%s has no row type", sp.file)
+			continue
+		}
+		var tags, names []string
+		for i := range typ.NumField() {
+			f := typ.Field(i)
+			tags = append(tags, f.Tag.Get("csv"))
+			if f.Type.Kind() != reflect.String {
+				t.Errorf("%s: %s is a %s", sp.file, f.Name, f.Type)
+			}
+		}
+		for _, c := range sp.columns {
+			names = append(names, c.name)
+		}
+		if !slices.Equal(tags, names) {
+			t.Errorf("%s: columns %v, fields %v", sp.file, names, tags)
+		}
+	}
+}
+
+// No spelling of a heading may mean two columns of a table.
+func TestSpellingsAreOneColumns(t *testing.T) {
+	for _, sp := range tables() {
+		of := map[string]string{}
+		for _, c := range sp.columns {
+			for _, w := range append(strings.Fields(c.also), fold(c.name)) {
+				if other, taken := of[w]; taken {
+					t.Errorf("%s: %q is both %s and %s", sp.file, w, other, c.name)
+				}
+				if w != fold(w) {
+					t.Errorf("%s: %q is not as fold leaves it", sp.file, w)
+				}
+				of[w] = c.name
+			}
+		}
+	}
+}
+
+// The headings of the file format, word for word.
+func TestHeadingsOfTheFormat(t *testing.T) {
+	want := map[string]string{
+		"survey.csv":       "item, value, unit",
+		"points.csv":       "point, kind, elevation [m], x [m], y [m], note",
+		"pipes.csv":        "pipe, from, to, length [m], bore [mm], material, laid, roughness [mm], c_value, group, note, spread",
+		"levels.csv":       "pipe, at [m], elevation [m]",
+		"fittings.csv":     "fitting, pipe, at [m], kind, bore [mm], loss_coefficient, note, spread",
+		"machines.csv":     "machine, from, to, kind, speed [rpm], note",
+		"duty.csv":         "machine, flow [L/s], head [m], efficiency [%]",
+		"taps.csv":         "tap, pipe, at [m], point, elevation [m], elevation_sd [m], outlet_bore [mm], outlet_coefficient, note",
+		"gauges.csv":       "gauge, kind, low, high, unit, accuracy [%], resolution, line, checked, note, gain_sd [%]",
+		"gauge_checks.csv": "gauge, applied, indicated, unit, checked",
+		"rounds.csv":       "round, start, end, water_temperature [C], barometer [kPa], note",
+		"conditions.csv":   "round, item, condition, value, unit, sd",
+		"readings.csv":     "round, time, tap, other_tap, kind, gauge, reading, unit, gauge_height [m], depth [mm], remark",
+		"requirements.csv": "requirement, kind, item, to, at_flow [L/s], limit, unit, grade, note",
+		"loggers.csv":      "channel, file, tap, kind, gauge, unit, clock_offset [s], time_zone, note",
+	}
+	for _, sp := range tables() {
+		if got := sp.headings(); got != want[sp.file] {
+			t.Errorf("%s: %s\nwant %s", sp.file, got, want[sp.file])
+		}
+	}
+}
+
+// Headings as crews write them.
+func TestSpellings(t *testing.T) {
+	for _, c := range []struct{ file, heading, column string }{
+		{"pipes.csv", "Inside Diameter [in]", "bore"}, {"pipes.csv", "DIA. (mm)", "bore"}, {"pipes.csv", "C-factor", "c_value"},
+		{"pipes.csv", "Year_Laid", "laid"}, {"pipes.csv", "k-s [mm]", "roughness"}, {"pipes.csv", "Length\n[m]", "length"},
+		{"fittings.csv", "Station [ft]", "at"}, {"fittings.csv", "chainage [m]", "at"}, {"taps.csv", "Elev. [ft]", "elevation"},
+		{"taps.csv", "elevation SD [m]", "elevation_sd"}, {"gauges.csv", "Gage No.", "gauge"}, {"gauges.csv", "max", "high"},
+		{"readings.csv", "Gage", "gauge"}, {"readings.csv", "gage height [ft]", "gauge_height"}, {"readings.csv", "Remarks (weather etc.)", "remark"},
+		{"readings.csv", "OtherTap", "other_tap"}, {"rounds.csv", "Water Temp [°C]", "water_temperature"}, {"duty.csv", "Eff [%]", "efficiency"},
+	} {
+		for _, sp := range tables() {
+			if sp.file != c.file {
+				continue
+			}
+			name, u, _ := cutUnit(c.heading)
+			i, ok := sp.find(c.heading, name)
+			if !ok || sp.columns[i].name != c.column {
+				t.Errorf("%s: %q is not found as %s", c.file, c.heading, c.column)
+			} else if col := sp.columns[i]; col.kind == measured {
+				if _, err := parseUnit(u, col); err != nil {
+					t.Errorf("%q: %v", c.heading, err)
+				}
+			}
+		}
+	}
+}
+
+// What is left out gets the file format's default, and nothing else does.
+func TestDefaults(t *testing.T) {
+	s, _ := read(t, with(map[string]string{"survey.csv": ""}))
+	i := s.Info
+	if i.TimeZone != time.UTC || i.SiteLevel != 0 || i.Latitude != 45 || i.WaterTemperature != 10 || i.FrictionLaw != survey.DarcyWeisbach ||
+		i.FalseAlarmRate != 0.05 || i.AsNewYear.OK || i.Cost != (survey.Cost{}) {
+		t.Errorf("defaults of survey.csv: %+v", i)
+	}
+	s, _ = read(t, good())
+	if t1 := s.Taps[0]; t1.ElevationSD != 0.05 || t1.OutletBore.OK {
+		t.Errorf("tap: %+v", t1)
+	}
+	if p := s.Pipes[0]; p.C.OK || p.Spread.OK || !p.Roughness.OK {
+		t.Errorf("pipe: %+v", p)
+	}
+	if g := s.Gauges[2]; g.Line != survey.WaterLine || s.Gauges[1].Line != survey.AirLine || g.GainSD != 0 {
+		t.Errorf("gauge: %+v", g)
+	}
+	if c := s.Conditions[4]; c.Value.OK || c.SD.OK {
+		t.Errorf("an empty value is to be estimated: %+v", c)
+	}
+	if r := s.Readings[1]; r.GaugeHeight != 0 || r.Depth.OK {
+		t.Errorf("reading: %+v", r)
+	}
+	// A stated nought is not the same.
+	s, _ = read(t, edit(t, "taps.csv", "T1,P1,250,,135,,", "T1,P1,250,,135,0,"))
+	if sd := s.Taps[0].ElevationSD; sd != 0 {
+		t.Errorf("elevation_sd 0 was read as %v", sd)
+	}
+}
+
+// What single cells become, in SI.
+func TestCells(t *testing.T) {
+	// Water column 9806.65 Pa a metre; US gallon 231 cubic inches; foot 0.3048 m.
+	s, ps := read(t, with(map[string]string{
+		"survey.csv": "item,value,unit\nTime Zone,Europe/London,\nsite level,400,ft\nwater-temperature,50,F\nenergy_price,120,EUR/MWh\npump_efficiency,0.7,\nhours_per_year,333.25,d\nflow_exceeded,100,gpm\nfalse_alarm_rate,1,%\nas_new_year,2026,\nfriction_law,Hazen Williams,\n",
+		"readings.csv": `round,time,tap,other_tap,kind,gauge,reading,unit,gauge_height [ft],depth [in],remark
+1,,T1,,Static,G1,16.2,m,2,,
+1,,T1,,static,G1,16.1-16.4,m,2,,=SUM(A1) as text
+1,,T2,,static,G2,74,psia,,,"two
+lines"
+2,,Q1,,flow,F1,100,gpm,,,
+2,,T1,,velocity,D1,30,mm,,4,
+`,
+		"conditions.csv": "round,item,condition,value,unit,sd\n*,R,level,500,ft,0.1\n2,C,Draw Off,-30,L/min,3\n2,M1,speed,24,Hz,\n1,P2,SHUT,,,\n",
+	}))
+	if n := len(ps); n != 1 || ps[0].Severity != survey.Notice {
+		t.Errorf("one notice, of the range, was to come:\n%s", lines(ps))
+	}
+	i := s.Info
+	check := func(what string, got, want float64) {
+		t.Helper()
+		if math.Abs(got-want) > 1e-14*math.Abs(want) {
+			t.Errorf("%s: %.17g, want %.17g", what, got, want)
+		}
+	}
+	gpm := 231 * math.Pow(0.0254, 3) / 60
+	check("site level", i.SiteLevel, 121.92)
+	check("water temperature", i.WaterTemperature, 10)
+	check("price of a kWh", i.Cost.EnergyPrice.V, 0.12)
+	check("pump efficiency", i.Cost.PumpEfficiency.V, 0.7)
+	check("hours a year", i.Cost.HoursPerYear.V, 7998)
+	check("flow exceeded", i.Cost.FlowExceeded.V, 100*gpm)
+	check("false alarm rate", i.FalseAlarmRate, 0.01)
+	if i.Cost.Currency != "EUR" || i.FrictionLaw != survey.HazenWilliams || i.TimeZone.String() != "Europe/London" || i.AsNewYear != survey.Some(2026) {
+		t.Errorf("%+v", i)
+	}
+	r := s.Readings
+	check("static", r[0].Value, 16.2*9806.65)
+	check("gauge height", r[0].GaugeHeight, 0.6096)
+	check("middle of a range", r[1].Value, 16.25*9806.65)
+	check("half of a range", r[1].HalfRange, 0.15*9806.65)
+	check("absolute", r[2].Value, 74*6894.757293168361)
+	check("flow", r[3].Value, 100*gpm)
+	check("velocity", r[4].Value, 30*9.80665)
+	check("depth", r[4].Depth.V, 0.1016)
+	if r[1].Remark != "=SUM(A1) as text" || r[2].Remark != "two\nlines" || r[3].Source.Line != 6 || r[1].Written != "16.1-16.4" || r[2].Unit != "psia" {
+		t.Errorf("%+v\n%+v\n%+v", r[1], r[2], r[3])
+	}
+	c := s.Conditions
+	check("level", c[0].Value.V, 152.4)
+	check("its uncertainty", c[0].SD.V, 0.03048)
+	check("inflow", c[1].Value.V, -0.0005)
+	check("speed", c[2].Value.V, 48*math.Pi)
+	if c[0].Round != survey.EveryRound || c[1].Kind != survey.DrawOff || c[3].Kind != survey.ShutOff || c[3].Value.OK {
+		t.Errorf("%+v", c)
+	}
+}
+
+// A gauge that reads above vacuum shows the bare unit, which converts back.
+func TestAbsoluteGauge(t *testing.T) {
+	s, ps := read(t, edit(t, "gauges.csv", "0,1000,kPa", "0,10,bar abs"))
+	if g := s.Gauges[1]; len(ps) != 0 || g.Unit != "bar" || g.High != 1e6 {
+		t.Errorf("%+v\n%s", g, lines(ps))
+	}
+}
+
+// A file beyond the limit is refused after the limit, not read to its end.
+func TestTooLarge(t *testing.T) {
+	endless := &endlessFile{}
+	fsys := oneFile{folderOf(with(map[string]string{"levels.csv": ""})), "levels.csv", endless}
+	s, ps := ReadFolder(fsys)
+	want := "error: levels.csv: is larger than 64 MB, which is no table of a survey; put logger exports into the folder logs and name them in loggers.csv\n"
+	if got := lines(ps); got != want {
+		t.Errorf("%s", got)
+	}
+	if endless.read > largest+1<<20 {
+		t.Errorf("%d bytes were read", endless.read)
+	}
+	if i := slices.IndexFunc(s.Inputs, func(in survey.Input) bool { return in.File == "levels.csv" }); i < 0 || s.Inputs[i].Understood != "not read" {
+		t.Error("the file is not on record")
+	}
+}
+
+// oneFile is a folder with one more file in it.
+type oneFile struct {
+	fstest.MapFS
+	name string
+	file fs.File
+}
+
+func (o oneFile) Open(name string) (fs.File, error) {
+	if name == o.name {
+		return o.file, nil
+	}
+	return o.MapFS.Open(name)
+}
+
+func (o oneFile) ReadDir(name string) ([]fs.DirEntry, error) {
+	entries, err := o.MapFS.ReadDir(name)
+	if name != "." {
+		return entries, err
+	}
+	info := fs.FileInfoToDirEntry(fakeInfo{o.name})
+	return append(entries, info), err
+}
+
+type fakeInfo struct{ name string }
+
+func (f fakeInfo) Name() string     { return f.name }
+func (fakeInfo) Size() int64        { return 1 << 40 }
+func (fakeInfo) Mode() fs.FileMode  { return 0o644 }
+func (fakeInfo) ModTime() time.Time { return time.Time{} }
+func (fakeInfo) IsDir() bool        { return false }
+func (fakeInfo) Sys() any           { return nil }
+
+type endlessFile struct{ read int }
+
+func (e *endlessFile) Read(b []byte) (int, error) {
+	e.read += len(b)
+	for i := range b {
+		b[i] = 'x'
+	}
+	return len(b), nil
+}
+func (*endlessFile) Stat() (fs.FileInfo, error) { return fakeInfo{"levels.csv"}, nil }
+func (*endlessFile) Close() error               { return nil }
+
+// A file that cannot be opened or read to its end is an error of its own.
+func TestUnreadable(t *testing.T) {
+	files := folderOf(with(map[string]string{"levels.csv": ""}))
+	_, ps := ReadFolder(oneFile{files, "levels.csv", failingFile{}})
+	if want := "error: levels.csv: cannot be read: disk gone; look at the file and its permissions\n"; lines(ps) != want {
+		t.Errorf("%s", lines(ps))
+	}
+	_, ps = ReadFolder(noFolder{})
+	if len(ps) < 2 || !ps.Fatal() || !strings.Contains(lines(ps), "error: .: the folder cannot be read: no such folder;") {
+		t.Errorf("%s", lines(ps))
+	}
+}
+
+type failingFile struct{}
+
+func (failingFile) Read([]byte) (int, error)   { return 0, fmt.Errorf("disk gone") }
+func (failingFile) Stat() (fs.FileInfo, error) { return fakeInfo{"levels.csv"}, nil }
+func (failingFile) Close() error               { return nil }
+
+type noFolder struct{}
+
+func (noFolder) Open(string) (fs.File, error) { return nil, fmt.Errorf("no such folder") }
