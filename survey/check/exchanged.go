@@ -9,15 +9,13 @@ import (
 
 // exchanged looks for two taps of a no-flow round whose readings, put in each other's
 // place, agree with the rest. Either the whole lines are exchanged (each gauge's height
-// goes with it) or the numbers alone. The pair must take away most of the misclosure,
-// stand within the limits afterwards, and do better than taking out the one worst
-// suspect by more than the one number that costs.
+// goes with it) or the numbers alone. Both must stand within the limits of the rest
+// afterwards, and the exchange must explain more than taking out the one worst suspect
+// does, by more than chance would: it costs no free number, the suspect's size is one.
 func (v *view) exchanged(r round, m mean, worst suspect) (survey.Alert, []witness, bool) {
-	const dearer = 4 // two standard uncertainties, squared
 	var best []witness
 	var bi, bj int
 	bestChi2 := math.Inf(1)
-	freedom := float64(len(m.ws) - 1)
 	for i := range m.ws {
 		for j := i + 1; j < len(m.ws); j++ {
 			if !exchangeable(m.ws[i], m.ws[j]) {
@@ -34,8 +32,7 @@ func (v *view) exchanged(r round, m mean, worst suspect) (survey.Alert, []witnes
 			}
 		}
 	}
-	gain := m.chi2 - bestChi2
-	if best == nil || gain < worst.z()*worst.z()+dearer || gain < v.limits.exchanged.value*(m.chi2-math.Min(freedom, m.chi2)) {
+	if best == nil || m.chi2-bestChi2 < worst.z()*worst.z()+math.Pow(v.limits.exchanged.value, 2) {
 		return survey.Alert{}, nil, false
 	}
 	a, b := m.ws[bi].head, m.ws[bj].head

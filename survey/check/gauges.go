@@ -20,15 +20,19 @@ func workingRange(v *view) []survey.Alert {
 			continue
 		}
 		var low, high, beyond readingsOf
+		lowEnd := v.limits.pinned.value // of the span, per cent: its class error
+		if g.Accuracy.OK {
+			lowEnd = 100 * g.Accuracy.V
+		}
 		for _, r := range v.rounds {
 			for _, h := range r.heads {
 				if h.Gauge != g.Name {
 					continue
 				}
 				for _, x := range h.Rows {
-					part := (x.Value - g.Low) / g.Span()
+					part := 100 * (x.Value - g.Low) / g.Span()
 					switch pressure := h.Quantity == survey.PiezometricHead || h.Quantity == survey.LocalTotalHead; {
-					case part > 1 || part < -g.Accuracy.Or(v.limits.pinned.value):
+					case part > 100 || part < -lowEnd:
 						beyond.add(h, x, part)
 					case part > v.limits.highScale.value:
 						high.add(h, x, part)
@@ -59,7 +63,7 @@ func workingRange(v *view) []survey.Alert {
 	return out
 }
 
-// readingsOf collects readings of one gauge with the part of its span they stand at.
+// readingsOf collects readings of one gauge with the part of its span they stand at, per cent.
 type readingsOf struct {
 	n         int
 	taps      []string
@@ -90,7 +94,7 @@ func (x *readingsOf) parts() string {
 	return fmt.Sprintf("%s at %s to %s %% of the span", count(x.n, "reading"), a, b)
 }
 
-func percent(part float64) string { return fmt.Sprintf("%.0f", 100*part) }
+func percent(part float64) string { return fmt.Sprintf("%.0f", part) }
 
 // repeats says where repeats of one reading lie further apart than a steady flow and a
 // steady hand explain.

@@ -14,7 +14,7 @@ func TestWorkingRange(t *testing.T) {
 	a := only(t, s, lowOnScale, "G3")
 	says(t, a.Statement, "at T3 in rounds A, B")
 	says(t, a.Evidence, "2 readings at 15 to 17 % of the span")
-	says(t, a.Limit, "0.25", "customary")
+	says(t, a.Limit, "25 %", "customary")
 	if a.Stay {
 		t.Error("nobody need stay for it")
 	}

@@ -146,7 +146,7 @@ func (v *view) notFullAlert(subject string, lows []low) survey.Alert {
 		a.Rule, a.Stay = "pressure below the vapour pressure", true
 		a.Statement = fmt.Sprintf("At %s in round %s the head means an absolute pressure below that at which water boils: no water column stands that low, so a reading, its unit or a level is wrong.", worst.where, worst.round.Name)
 		a.Action = "Read it again, look whether the gauge shows absolute pressure, and check the level."
-	case absolute < boils+v.limits.vapour.value:
+	case absolute < boils+unit.Kilopascal.ToSI(v.limits.vapour.value):
 		a.Rule, a.Stay = "pressure near the vapour pressure", true
 		a.Statement = fmt.Sprintf("At %s in round %s the pressure comes near that at which water boils: the column can part there, and strike when it joins.", worst.where, worst.round.Name)
 		a.Limit = v.limits.vapour.String()

@@ -214,11 +214,13 @@ func TestExchangedReadings(t *testing.T) {
 		t.Errorf("got\n%s", text(found))
 	}
 
-	// Beside a far larger fault the exchange is no more than part of it, and comes after.
+	// Beside larger and smaller faults it is seen all the same.
 	s = site()
 	exchange(s, true)
-	shift(s, "A", "T1", 30)
-	if as := look(s); len(as) != 2 || as[0].Subject != "T1" || as[1].Rule != exchangedRule {
+	for name, d := range map[string]float64{"T1": 30, "T2": 3, "T4": 2} {
+		shift(s, "A", name, d)
+	}
+	if as := look(s); len(as) != 4 || len(first(as, exchangedRule)) != 1 {
 		t.Errorf("got\n%s", text(as))
 	}
 
