@@ -1,7 +1,6 @@
 package hydraulic
 
 import (
-	"errors"
 	"math"
 
 	"tapround/calibrate/friction"
@@ -11,301 +10,243 @@ import (
 type View int
 
 const (
-	Piezometric       View = iota // total head less alpha V^2/2g
+	Piezometric       View = iota // total head less alpha V^2/2g: what a wall tap sees
 	Total                         // total head of the section
-	VelocityHead                  // alpha V^2/2g
+	VelocityHead                  // alpha V^2/2g of the section
 	LocalVelocityHead             // u^2/2g at Depth
-	LocalTotal                    // piezometric head and local velocity head
+	LocalTotal                    // piezometric head and u^2/2g: what a pitot opening sees
 	Flow                          // m3/s, positive From to To
 )
 
-// Probe is a place where something is read: at a point (Link then says which pipe
-// it reads on, -1 none), or on a link at a chainage. Depth is the distance of a
-// pitot opening from the near wall; NaN: the centreline.
+// Probe is a place where something is read: at a point, or along a link.
+//
+// At a reservoir a probe reads the level, without velocity. At an outlet it reads the
+// elevation, and the velocity of the jet or of the pipe's end. On a machine it reads
+// its From side at At 0 and its To side beyond.
 type Probe struct {
-	Point int // >= 0: at a point
-	Link  int
-	At    float64
+	Point int     // >= 0: at this point
+	Link  int     // the link it is on, or, at a point, the one it reads velocity and flow on; -1 none, at an outlet its widest pipe
+	At    float64 // m from the From end; a fitting there lies beyond the probe
 	View  View
-	Depth float64
+	Depth float64 // m, of a pitot opening from the near wall; NaN: the centreline
 }
 
-// Gradient is the derivative of a reading by everything: ln k or ln C and head
-// factor by link, ln K by flat fitting, draw-off and fixed head by point.
-type Gradient struct{ LnRough, LnK, HeadFactor, DrawOff, FixedHead []float64 }
-
-// NewGradient makes room for one.
-func (s *System) NewGradient() *Gradient {
-	n, m := len(s.points), len(s.links)
-	return &Gradient{make([]float64, m), make([]float64, s.flat), make([]float64, m), make([]float64, n), make([]float64, n)}
-}
-
-// Zero clears it; AddScaled adds f times another.
-func (g *Gradient) Zero() {
-	for _, s := range g.all() {
-		clear(s)
-	}
-}
-
-// AddScaled adds f times o.
-func (g *Gradient) AddScaled(f float64, o *Gradient) {
-	from := o.all()
-	for i, s := range g.all() {
-		for j, x := range from[i] {
-			s[j] += f * x
-		}
-	}
-}
-
-func (g *Gradient) all() [5][]float64 {
-	return [5][]float64{g.LnRough, g.LnK, g.HeadFactor, g.DrawOff, g.FixedHead}
-}
-
-// local is a reading as a function of the head at one point and the flow and
-// parameters of one link.
-type local struct {
-	v          float64
-	point      int // whose total head it moves with one to one; -1 none
+// reading is a probed value and what it depends on directly: one to one on the head at
+// a point, and on flow and parameters of a link.
+type reading struct {
+	value      float64
+	point      int // -1 none
 	link       int // -1 none
 	dq, dParam float64
-	minor      float64 // sign of the fittings in it: -1 for heads down the pipe
-	upTo       float64
+	// Fittings from first to last-1 of the link enter with sign times their loss.
+	first, last int
+	sign        float64
 }
 
-// Read gives what a probe reads at the last solved state; NaN where nothing feeds it.
-func (v *Solver) Read(p Probe) float64 { return v.local(p).v }
+// Read gives what a probe reads at the last solved state: heads in m, flows in m3/s.
+// It is NaN for a head where nothing feeds the place or where two closures trap it,
+// and for everything where no state was solved.
+func (v *Solver) Read(p Probe) float64 { return v.reading(p).value }
 
-func (v *Solver) local(p Probe) local {
-	s := v.sys
-	out := local{point: -1, link: p.Link, v: nan}
-	q := 0.0
-	if p.Link >= 0 {
-		q = v.st.Flow[p.Link]
+func (v *Solver) reading(p Probe) reading {
+	r := reading{value: math.NaN(), point: -1, link: -1}
+	if v.state == nil || p.Point >= len(v.sys.points) || p.Link >= len(v.sys.links) || (p.Point < 0 && p.Link < 0) {
+		return r
 	}
-	if p.View == Flow {
-		if p.Link < 0 {
-			return out
-		}
-		out.v, out.dq = q, 1
-		if !v.live[s.links[p.Link].From] && !v.live[s.links[p.Link].To] {
-			out.v = nan
-		}
-		return out
-	}
-	var vel friction.Value
-	pipe := p.Link >= 0 && s.links[p.Link].Pipe != nil
-	free := p.Point >= 0 && s.points[p.Point].Kind != Junction
-	if pipe {
-		fp := s.links[p.Link].Pipe.Pipe
-		lr := v.p.LnRough[p.Link]
-		switch p.View {
-		case LocalVelocityHead, LocalTotal:
-			local := fp.LocalVelocityHead(q, lr, v.c.Viscosity, v.c.Gravity, p.Depth)
-			mean := fp.VelocityHead(q, lr, v.c.Viscosity, v.c.Gravity)
-			vel = local
-			if p.View == LocalTotal {
-				vel = friction.Value{V: local.V - mean.V, DQ: local.DQ - mean.DQ, DParam: local.DParam - mean.DParam}
-			}
-		default:
-			vel = fp.VelocityHead(q, lr, v.c.Viscosity, v.c.Gravity)
-		}
+	if p.Point >= 0 && p.Link < 0 {
+		p.Link = v.sys.spouts[p.Point]
 	}
 	switch p.View {
+	case Flow:
+		if p.Link >= 0 {
+			r.value, r.link, r.dq = v.flow[p.Link], p.Link, 1
+		}
 	case VelocityHead, LocalVelocityHead:
-		if free && p.View == VelocityHead {
-			out.v = 0
-			return out
-		}
-		out.v, out.dq, out.dParam = vel.V, vel.DQ, vel.DParam
-		return out
-	}
-	// Heads.
-	if free && p.View != Total {
-		// In still water, or in the free jet, the piezometric head is the surface.
-		out.link = -1
-		if s.points[p.Point].Kind == Outlet {
-			out.v = s.points[p.Point].Elevation
-			return out
-		}
-		out.v, out.point = v.c.Head[p.Point], p.Point
-		return out
-	}
-	h := v.totalAt(p)
-	out.v, out.point, out.dq, out.dParam, out.minor, out.upTo = h.v, h.point, h.dq, h.dParam, h.minor, h.upTo
-	sign := 0.0
-	switch p.View {
+		e := v.velocity(p, p.View == LocalVelocityHead)
+		r.value, r.link, r.dq, r.dParam = e.V, p.Link, e.DQ, e.DParam
+	case Total:
+		r = v.total(p)
 	case Piezometric:
-		sign = -1
+		r = v.lessVelocity(v.total(p), p)
 	case LocalTotal:
-		sign = 1
+		r = v.lessVelocity(v.total(p), p)
+		r.add(v.velocity(p, true), 1)
 	}
-	out.v += sign * vel.V
-	out.dq += sign * vel.DQ
-	out.dParam += sign * vel.DParam
-	return out
+	if r.link >= 0 && !v.in[r.link] {
+		// Nothing flows, whatever the parameters.
+		r.dq, r.dParam, r.last = 0, 0, r.first
+	}
+	return r
 }
 
-// totalAt is the total head at a probe's place.
-func (v *Solver) totalAt(p Probe) local {
-	s := v.sys
+func (r *reading) add(e friction.Value, sign float64) {
+	r.value += sign * e.V
+	r.dq += sign * e.DQ
+	r.dParam += sign * e.DParam
+}
+
+// lessVelocity turns total into piezometric head. In the open, at an outlet or in a
+// jet, that is the elevation itself.
+func (v *Solver) lessVelocity(r reading, p Probe) reading {
+	if o := v.open(p); o >= 0 {
+		return reading{value: v.head[o], point: -1, link: p.Link}
+	}
+	r.add(v.velocity(p, false), -1)
+	return r
+}
+
+// open is the outlet at which a probe stands in the free, or -1.
+func (v *Solver) open(p Probe) int {
 	if p.Point >= 0 {
-		return local{v: v.st.Head[p.Point], point: p.Point, link: p.Link}
-	}
-	l := s.links[p.Link]
-	q := v.st.Flow[p.Link]
-	if !v.open(p.Link) || l.Pipe == nil {
-		end := l.From
-		if v.beyondClosure(p.Link, p.At) {
-			end = l.To
+		if v.sys.points[p.Point].Kind == Outlet {
+			return p.Point
 		}
-		return local{v: v.pointHead(end), point: end, link: p.Link}
+		return -1
 	}
-	out := local{point: l.From, link: p.Link, minor: -1, upTo: p.At}
-	loss := l.Pipe.Loss(q, v.p.LnRough[p.Link], v.c.Viscosity, v.c.Gravity)
-	part := math.Min(1, math.Max(0, p.At/l.Pipe.Length))
-	out.v = v.pointHead(l.From) - part*loss.H
-	out.dq, out.dParam = -part*loss.DQ, -part*loss.DParam
-	if s.points[l.From].Kind == Outlet {
-		// The velocity head of an outlet end is in the point's head, and moves with q.
-		_, dq, dp := v.outletHead(p.Link, q)
-		out.dq, out.dParam = out.dq-dq, out.dParam-dp
+	if v.jetAt(p) {
+		return v.sys.links[p.Link].To
 	}
-	for k, f := range l.Pipe.Fittings {
-		if f.At < p.At {
-			h, dq := friction.Minor(q, v.kOf(p.Link, k, q), f.Bore, v.c.Gravity)
-			out.v, out.dq = out.v-h, out.dq-dq
-		}
-	}
-	return out
+	return -1
 }
 
-// pointHead is the total head at a point as its own pipes' ends have it.
-func (v *Solver) pointHead(p int) float64 { return v.st.Head[p] }
-
-// beyondClosure reports whether a chainage lies on the To side of what closes a pipe:
-// a shut pipe is closed at its From end, a shut fitting or a check valve where it stands.
-func (v *Solver) beyondClosure(i int, at float64) bool {
-	l := v.sys.links[i]
-	if l.Pipe == nil {
-		return at > 0
-	}
-	if v.c.Shut[i] {
-		return true
-	}
-	for k, f := range l.Pipe.Fittings {
-		if v.c.FittingShut[v.sys.first[i]+k] || (v.blocked[i] && f.OneWay) {
-			return f.At < at
-		}
-	}
-	// An outlet that would draw air: the pipe stands full up to it.
-	return v.sys.points[l.From].Kind == Outlet
+// jetAt reports a probe in the jet beyond a nozzle.
+func (v *Solver) jetAt(p Probe) bool {
+	k := v.sys.nozzle(p.Link)
+	return k >= 0 && v.in[p.Link] && p.At > v.sys.links[p.Link].Pipe.Fittings[k].At
 }
 
-// Gradient fills g with the exact derivatives of what a probe reads. With the reading
-// y(H, Q, theta), the balances and energies solved, and lambda from
-//
-//	(A D^-1 A') mu = dy/dH + A D^-1 dy/dQ
-//
-// the derivative by any quantity that adds e_i to link i's energy is
-// -(nu_i) e_i, nu_i = D_i^-1 (mu_from - mu_to ... ) + direct part. One solve with the
-// factor of the solution.
-func (v *Solver) Gradient(p Probe, g *Gradient) error {
-	s := v.sys
-	g.Zero()
-	r := v.local(p)
-	if math.IsNaN(r.v) {
-		return errors.New("nothing feeds the place that is read")
+// velocity is the velocity head where a probe stands: of the section, or local.
+func (v *Solver) velocity(p Probe, local bool) friction.Value {
+	if p.Link < 0 || v.sys.links[p.Link].Pipe == nil || !v.in[p.Link] {
+		return friction.Value{}
 	}
-	// dy = a.dH + b dQ_link + direct. Links: dQ_i = (dH_from - dH_to - de_i)/D_i with
-	// de_i the change of the loss at constant flow.
-	clear(v.rhs)
-	open := r.link >= 0 && v.flows(r.link)
-	b := 0.0
-	if open {
-		b = r.dq
-	}
-	if r.point >= 0 {
-		if row := s.row[r.point]; row >= 0 {
-			v.rhs[row]++
-		}
-	}
-	if b != 0 {
-		l := s.links[r.link]
-		d := v.atSlope[r.link]
-		if row := s.row[l.From]; row >= 0 {
-			v.rhs[row] += b / d
-		}
-		if row := s.row[l.To]; row >= 0 {
-			v.rhs[row] -= b / d
-		}
-	}
-	if s.rows > 0 {
-		v.factor.Solve(v.rhs, v.dh)
-	}
-	mu := func(p int) float64 {
-		if row := s.row[p]; row >= 0 && v.live[p] {
-			return v.dh[row]
-		}
-		return 0
-	}
-	for i := range s.points {
-		if s.row[i] >= 0 && v.live[i] {
-			g.DrawOff[i] = -mu(i)
-		}
-	}
-	if r.point >= 0 && s.points[r.point].Kind == Fixed {
-		g.FixedHead[r.point]++
-	}
-	for i, l := range s.links {
-		if !v.flows(i) {
-			continue
-		}
-		d := v.atSlope[i]
-		// Sensitivity of y to a unit of extra loss in this link.
-		w := (mu(l.From) - mu(l.To)) / d
-		if i == r.link {
-			w -= b / d
-		}
-		// Junction balances: extra loss e lowers Q by e/d, so the head pattern moves by
-		// mu; that is w above, with the sign of a loss.
-		v.spread(i, w, g)
-		// A fixed head at an end acts as the opposite of a loss (From) or as one (To).
-		if s.points[l.From].Kind == Fixed {
-			g.FixedHead[l.From] -= w
-		}
-		if s.points[l.To].Kind == Fixed {
-			g.FixedHead[l.To] += w
-		}
-	}
-	// Direct parts: what the reading itself takes from the parameters of its link.
-	if r.link >= 0 && s.links[r.link].Pipe != nil {
-		g.LnRough[r.link] += r.dParam
-		if r.minor != 0 {
-			q := v.st.Flow[r.link]
-			for k, f := range s.links[r.link].Pipe.Fittings {
-				if f.At < r.upTo && !(q < 0 && !math.IsNaN(f.ReverseK)) {
-					h, _ := friction.Minor(q, v.kOf(r.link, k, q), f.Bore, v.c.Gravity)
-					g.LnK[s.first[r.link]+k] += r.minor * h
-				}
+	l := &v.sys.links[p.Link]
+	q := v.flow[p.Link]
+	if p.Point >= 0 {
+		switch v.sys.points[p.Point].Kind {
+		case Fixed:
+			return friction.Value{} // still water
+		case Outlet:
+			if p.Point == l.To && v.jet[p.Link] > 0 {
+				return v.endVelocityHead(p.Link, q)
 			}
 		}
+	} else if v.jetAt(p) {
+		return v.endVelocityHead(p.Link, q)
 	}
-	return nil
+	if local {
+		return l.Pipe.LocalVelocityHead(q, v.lnRough[p.Link], v.viscosity, v.gravity, p.Depth)
+	}
+	return l.Pipe.VelocityHead(q, v.lnRough[p.Link], v.viscosity, v.gravity)
 }
 
-// spread adds w times the derivative of link i's loss by its parameters.
-func (v *Solver) spread(i int, w float64, g *Gradient) {
-	if w == 0 {
-		return
+// total is the total head where a probe stands.
+func (v *Solver) total(p Probe) reading {
+	s := v.sys
+	r := reading{point: p.Point, link: p.Link}
+	switch {
+	case p.Point >= 0 && s.points[p.Point].Kind == Outlet:
+		r.value, r.point = v.head[p.Point], -1
+		r.add(v.velocity(p, false), 1)
+	case p.Point >= 0:
+		r.value = v.headAt(p.Point)
+	case s.links[p.Link].Machine != nil:
+		r.point = s.links[p.Link].From
+		if p.At > 0 {
+			r.point = s.links[p.Link].To
+		}
+		r.value = v.headAt(r.point)
+	case !v.in[p.Link]:
+		r.point = v.sideOf(p)
+		r.value = math.NaN()
+		if r.point >= 0 {
+			r.value = v.headAt(r.point)
+		}
+	default:
+		r = v.along(p)
 	}
-	l := v.sys.links[i]
-	if l.Machine != nil {
-		g.HeadFactor[i] += w * v.atParam[i]
-		return
+	return r
+}
+
+// headAt is the head at a point: NaN where nothing feeds it. An outlet's is its
+// elevation, that of the water that stands in a closed pipe there.
+func (v *Solver) headAt(p int) float64 {
+	if v.sys.points[p].Kind == Junction && !v.live[p] {
+		return math.NaN()
 	}
-	g.LnRough[i] += w * v.atParam[i]
-	first := v.sys.first[i]
-	for k := range l.Pipe.Fittings {
-		g.LnK[first+k] += w * v.atMinor[first+k]
+	return v.head[p]
+}
+
+// along is the total head on a pipe that flows: from its From end down, or, where that
+// is an outlet, from its To end up.
+func (v *Solver) along(p Probe) reading {
+	l := &v.sys.links[p.Link]
+	q := v.flow[p.Link]
+	part := math.Min(1, math.Max(0, p.At/l.Pipe.Length))
+	before := 0
+	for before < len(l.Pipe.Fittings) && l.Pipe.Fittings[before].At < p.At {
+		before++
 	}
+	r := reading{point: l.From, link: p.Link, sign: -1, first: 0, last: before}
+	if v.sys.points[l.From].Kind == Outlet {
+		r = reading{point: l.To, link: p.Link, sign: 1, first: before, last: len(l.Pipe.Fittings)}
+		part = 1 - part
+	}
+	loss := l.Pipe.Loss(q, v.lnRough[p.Link], v.viscosity, v.gravity)
+	r.value = v.headAt(r.point)
+	r.add(friction.Value{V: loss.H, DQ: loss.DQ, DParam: loss.DParam}, r.sign*part)
+	for k := r.first; k < r.last; k++ {
+		h, dq := v.fittingLoss(p.Link, k, q)
+		r.add(friction.Value{V: h, DQ: dq}, r.sign)
+	}
+	return r
+}
+
+// fittingLoss is what fitting k of link i loses at flow q, with its derivative.
+func (v *Solver) fittingLoss(i, k int, q float64) (h, dq float64) {
+	f := &v.sys.links[i].Pipe.Fittings[k]
+	c := v.unit[v.sys.first[i]+k]
+	if q < 0 && !math.IsNaN(f.ReverseK) {
+		c = perSquare(f.ReverseK, f.Bore, v.gravity)
+	}
+	return c * q * math.Abs(q), 2 * c * math.Abs(q)
+}
+
+// sideOf is the end of a pipe without flow whose head a place on it has: a pipe that is
+// shut is closed at its From end, a fitting closes it where it stands, an outlet that
+// would draw air at its own end. It is -1 between two closures.
+func (v *Solver) sideOf(p Probe) int {
+	s, i := v.sys, p.Link
+	l := &s.links[i]
+	before, after := 0, 0
+	closed := func(beyond bool) {
+		if beyond {
+			before++
+		} else {
+			after++
+		}
+	}
+	if v.pipeShut[i] {
+		closed(true)
+	}
+	for k, f := range l.Pipe.Fittings {
+		if v.fittingShut[s.first[i]+k] || (f.OneWay && v.blocked[i]) {
+			closed(f.At < p.At)
+		}
+	}
+	if before+after == 0 {
+		switch {
+		case s.points[l.From].Kind == Outlet:
+			closed(true)
+		case s.points[l.To].Kind == Outlet:
+			closed(false)
+		}
+	}
+	switch {
+	case before == 0:
+		return l.From
+	case after == 0:
+		return l.To
+	}
+	return -1
 }

@@ -1,38 +1,6 @@
-// Package hydraulic is the steady model of a pipe system: heads and flows of every
-// round from the works' parameters and the round's conditions, and the exact
-// sensitivities of whatever a tap reads.
-//
-// # Equations
-//
-// On total head H (m above datum) and flow Q (m3/s, positive From to To),
-//
-//	H_from - H_to = sum of friction + sum of K V|V|/2g        along a pipe
-//	H_to - H_from = gain(Q, speed)                            across a pump (a turbine takes head)
-//	sum of Q in - sum of Q out = draw-off                     at a junction
-//
-// A tap sees h = H - alpha V^2/2g with V of its pipe. Total head is common to all
-// pipe ends at a junction. At a free outlet the piezometric head is the elevation, so
-// the total head at the pipe's end is that plus alpha V^2/2g of the pipe, or V^2/2g
-// of the jet where a nozzle ends it; nothing flows in from an outlet.
-//
-// # Method
-//
-// Newton's method on heads and flows together, with the Schur complement on heads
-// [TP]: one sparse symmetric factorisation an iteration. Losses rise with flow, so
-// the solution is the minimum of a convex content function [CM] and a shortened step
-// always helps. One-way links (check valves, machines, outlets) are opened and closed
-// around it. Sensitivities are adjoint: one solve with the same factor for each reading.
-//
-// # References
-//
-//	[TP] E. Todini, S. Pilati, in Computer Applications in Water Supply 1 (1988) 1
-//	[CM] M. A. Collins et al., J. Hydraul. Div. ASCE 104 (1978): content and co-content
 package hydraulic
 
 import (
-	"fmt"
-	"math"
-
 	"tapround/calibrate/friction"
 	"tapround/calibrate/sparse"
 )
@@ -41,19 +9,20 @@ import (
 type PointKind int
 
 const (
-	Junction PointKind = iota
-	Fixed              // reservoir: its head is given
-	Outlet             // free discharge at its elevation
+	Junction PointKind = iota // links meet; water may be drawn off
+	Fixed                     // reservoir: its head is given
+	Outlet                    // free discharge at its elevation
 )
 
-// Point is a place where links meet or end.
+// Point is a place where links meet or end. Elevation (m) is used at outlets only.
 type Point struct {
 	Name      string
 	Kind      PointKind
 	Elevation float64
 }
 
-// Link is a pipe or a machine between two points; exactly one of them is set.
+// Link joins two points: a pipe or a machine, exactly one of them set. Its flow
+// counts positive from From to To.
 type Link struct {
 	Name     string
 	From, To int
@@ -67,75 +36,109 @@ type Pipe struct {
 	Fittings []Fitting
 }
 
-// Fitting lies between the From end and chainage x when At < x.
+// Fitting is a local loss K V|V|/2g on a pipe. It lies between the From end and
+// chainage x when At < x.
 type Fitting struct {
-	Name     string
-	At       float64
-	Bore     float64 // whose velocity head K is on
-	OneWay   bool    // check valve
-	ReverseK float64 // K on Bore for flow To -> From; NaN: the same parameter as forward
-	JetBore  float64 // nozzle at an outlet end: bore of the jet; 0: none
+	Name string
+	At   float64 // m from the From end
+	Bore float64 // m; K is on the velocity head in it
+	// OneWay marks a check valve: nothing flows from To to From.
+	OneWay bool
+	// ReverseK is K, on the same bore, for flow from To to From; it is a constant then,
+	// not a parameter. NaN: the same parameter as forwards.
+	ReverseK float64
+	// JetBore is the bore of the jet, m, of a nozzle that ends a pipe at an outlet; 0:
+	// no nozzle.
+	JetBore float64
 }
 
-// Machine is a pump or a turbine with its works curve at the rated speed (rad/s).
+// Machine is a pump or a turbine with its works curve at the rated speed. A running
+// machine passes nothing backwards.
 type Machine struct {
 	Turbine    bool
-	Curve      friction.Curve
-	RatedSpeed float64
+	Curve      friction.Curve // head gained by a pump, taken by a turbine, m
+	RatedSpeed float64        // rad/s; 0: not known
 }
 
-// System is the topology, read-only once made and shared by rounds and goroutines.
+// System is a topology with its symbolic analysis: read-only once made, shared by
+// rounds and goroutines.
 type System struct {
 	points []Point
 	links  []Link
-	first  []int // flat index of a link's first fitting
-	flat   int
-	row    []int // junction's row, -1 for fixed points and outlets
+	first  []int   // flat index of each link's first fitting
+	flat   int     // number of fittings
+	at     [][]int // links at each point
+	row    []int   // matrix row of each junction, -1 elsewhere
 	rows   int
 	plan   *sparse.Plan
-	// Where a link's conductance goes: entries of its ends' diagonal and between.
-	diagFrom, diagTo, between []int
-	entries                   int
-	diag                      []int // entry of each row's own diagonal
-	at                        [][]int
+	entry  []int // matrix entry between the ends of each link, -1 where an end has no row
+	values int   // number of matrix entries; entry r is the diagonal of row r
+	ways   []way
+	size   []float64 // a flow of each link's size, m3/s
+	bends  []bool    // machine whose loss falls with flow somewhere on its curve
+	spouts []int     // pipe that tells the total head of each outlet, -1 elsewhere
+	oneWay bool      // some link is not free
 }
 
-// NewSystem makes a system. An error names the link or point that makes no sense.
+// way is the direction in which a link may flow.
+type way int8
+
+const (
+	free way = iota
+	forwardOnly
+	backwardOnly
+	neither
+)
+
+// against reports whether q runs in a direction that is barred.
+func (w way) against(q float64) bool {
+	switch w {
+	case forwardOnly:
+		return q < 0
+	case backwardOnly:
+		return q > 0
+	case neither:
+		return q != 0
+	}
+	return false
+}
+
+// NewSystem analyses a topology. The error names the link, fitting or point that
+// makes no sense and why; all of them at once.
 func NewSystem(points []Point, links []Link) (*System, error) {
-	s := &System{points: points, links: links, first: make([]int, len(links)), row: make([]int, len(points)),
-		diagFrom: make([]int, len(links)), diagTo: make([]int, len(links)), between: make([]int, len(links)), at: make([][]int, len(points))}
+	if err := validate(points, links); err != nil {
+		return nil, err
+	}
+	n, m := len(points), len(links)
+	s := &System{points: points, links: links, first: make([]int, m), at: make([][]int, n), row: make([]int, n),
+		entry: make([]int, m), ways: make([]way, m), size: make([]float64, m), bends: make([]bool, m), spouts: make([]int, n)}
+	var r, c []int
 	for i, p := range points {
-		s.row[i] = -1
+		s.row[i], s.spouts[i] = -1, -1
 		if p.Kind == Junction {
 			s.row[i] = s.rows
+			r, c = append(r, s.rows), append(c, s.rows)
 			s.rows++
 		}
 	}
-	var r, c []int
-	for i := 0; i < s.rows; i++ {
-		s.diag = append(s.diag, i)
-		r, c = append(r, i), append(c, i)
-	}
 	for i, l := range links {
-		if (l.Pipe == nil) == (l.Machine == nil) {
-			return nil, fmt.Errorf("link %s must be a pipe or a machine", l.Name)
-		}
-		if l.From < 0 || l.To < 0 || l.From >= len(points) || l.To >= len(points) || l.From == l.To {
-			return nil, fmt.Errorf("link %s does not join two points", l.Name)
-		}
 		s.first[i] = s.flat
 		if l.Pipe != nil {
 			s.flat += len(l.Pipe.Fittings)
 		}
 		s.at[l.From], s.at[l.To] = append(s.at[l.From], i), append(s.at[l.To], i)
-		a, b := s.row[l.From], s.row[l.To]
-		s.between[i] = -1
-		if a >= 0 && b >= 0 {
-			s.between[i] = len(r)
+		s.entry[i] = -1
+		if a, b := s.row[l.From], s.row[l.To]; a >= 0 && b >= 0 {
+			s.entry[i] = len(r)
 			r, c = append(r, a), append(c, b)
 		}
+		s.ways[i] = wayOf(l, points)
+		s.oneWay = s.oneWay || s.ways[i] != free
+		s.size[i], s.bends[i] = sizeOf(l)
+		s.noteSpout(l.From, i)
+		s.noteSpout(l.To, i)
 	}
-	s.entries = len(r)
+	s.values = len(r)
 	plan, err := sparse.NewPlan(s.rows, r, c)
 	if err != nil {
 		return nil, err
@@ -144,64 +147,33 @@ func NewSystem(points []Point, links []Link) (*System, error) {
 	return s, nil
 }
 
-// Link is one link by its index.
-func (s *System) Link(i int) Link { return s.links[i] }
-
-// NumLinks, NumPoints and NumFittings count.
-func (s *System) NumLinks() int { return len(s.links) }
-
-// NumFittings counts the fittings of all pipes.
-func (s *System) NumFittings() int { return s.flat }
-
-// FittingIndex is the flat index of fitting i of a link.
-func (s *System) FittingIndex(link, i int) int { return s.first[link] + i }
-
-// Parameters of the works, shared by all rounds: ln k (m) or ln C of each link, ln K
-// of each fitting by flat index, head factor of each link (1 sound).
-type Parameters struct{ LnRough, LnK, HeadFactor []float64 }
-
-// NewParameters makes room for them.
-func (s *System) NewParameters() Parameters {
-	p := Parameters{make([]float64, len(s.links)), make([]float64, s.flat), make([]float64, len(s.links))}
-	for i := range p.HeadFactor {
-		p.HeadFactor[i] = 1
+// noteSpout keeps the widest pipe at an outlet, the first listed on a tie.
+func (s *System) noteSpout(p, link int) {
+	l := s.links[link]
+	if s.points[p].Kind != Outlet || l.Pipe == nil {
+		return
 	}
-	return p
+	if o := s.spouts[p]; o < 0 || s.links[o].Pipe.Bore < l.Pipe.Bore {
+		s.spouts[p] = link
+	}
 }
 
-// Conditions of a round.
-type Conditions struct {
-	Head               []float64 // per point, used at fixed ones
-	DrawOff            []float64 // per point, out positive
-	Shut               []bool    // per link: pipe closed at its From end
-	FittingShut        []bool    // per flat fitting
-	Stopped            []bool    // per link: machine that passes nothing
-	Speed              []float64 // per link, rad/s; 0: rated
-	Viscosity, Gravity float64
+// wayOf is the direction that check valves, machines and outlets leave to a link.
+func wayOf(l Link, points []Point) way {
+	forward := l.oneWay() || points[l.To].Kind == Outlet
+	switch backward := points[l.From].Kind == Outlet; {
+	case forward && backward:
+		return neither
+	case forward:
+		return forwardOnly
+	case backward:
+		return backwardOnly
+	}
+	return free
 }
 
-// State is a solved round.
-type State struct {
-	Head                 []float64 // total head per point; NaN where nothing feeds it and nothing is drawn
-	Flow                 []float64 // per link
-	Closed               []bool    // per link: no water passes
-	Iterations           int
-	HeadError, FlowError float64 // worst energy, m, and worst balance, m3/s
-	Caveats              []string
-}
-
-// Unsolvable says in plain words why a round has no solution, with the names of the
-// points and links it is about.
-type Unsolvable struct {
-	Cause         string
-	Points, Links []string
-}
-
-func (u *Unsolvable) Error() string { return u.Cause }
-
-// oneWay reports whether a link passes water from From to To only: machines and pipes
-// with a check valve.
-func (l Link) oneWay() bool {
+// oneWay reports a machine or a pipe with a check valve.
+func (l *Link) oneWay() bool {
 	if l.Machine != nil {
 		return true
 	}
@@ -213,4 +185,28 @@ func (l Link) oneWay() bool {
 	return false
 }
 
-var nan = math.NaN()
+// Link is one link by its index.
+func (s *System) Link(i int) Link { return s.links[i] }
+
+// NumLinks counts the links.
+func (s *System) NumLinks() int { return len(s.links) }
+
+// NumFittings counts the fittings of all pipes.
+func (s *System) NumFittings() int { return s.flat }
+
+// FittingIndex is the flat index of a link's fitting i: fittings count in the order
+// of their links, and along each link.
+func (s *System) FittingIndex(link, i int) int { return s.first[link] + i }
+
+// nozzle is the fitting that ends link i as a jet into an outlet, or -1.
+func (s *System) nozzle(i int) int {
+	l := s.links[i]
+	if l.Pipe == nil || s.points[l.To].Kind != Outlet {
+		return -1
+	}
+	k := len(l.Pipe.Fittings) - 1
+	if k < 0 || l.Pipe.Fittings[k].JetBore == 0 {
+		return -1
+	}
+	return k
+}
