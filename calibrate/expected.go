@@ -42,3 +42,8 @@ func (e *Expected) FlowOf(round int, link string) float64 {
 	}
 	return e.w.states[round].Flow[l]
 }
+
+// Total is the total head at a tap in a round, m.
+func (e *Expected) Total(round, tap int) float64 {
+	return e.w.solvers[round].Read(e.m.ProbeOf(e.m.Survey.Taps[tap].Name, hydraulic.Total))
+}
