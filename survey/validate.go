@@ -50,6 +50,7 @@ type validation struct {
 	gauge    map[string]*Gauge
 	round    map[string]*Round
 	problems Problems
+	dangling bool              // a pipe or machine does not join two known points
 	remedies map[string]string // by table and name: one slip may fill a whole file
 }
 

@@ -34,6 +34,8 @@ func (v *validation) fittings() {
 			continue
 		}
 		switch {
+		case math.IsNaN(f.At) || math.IsNaN(p.Length):
+			continue // where it stands could not be read
 		case f.Kind.ChangesBore():
 			v.changeOfBore(f, p)
 		case f.Bore.OK && p.Bore > 0 && f.Bore.V > 0 && math.Abs(math.Log(f.Bore.V/p.Bore)) > math.Log(3):
@@ -126,18 +128,16 @@ func entranceOrExit(k FittingKind) bool {
 }
 
 // reservoirEnds tells of pipe ends at a reservoir without an entrance or exit: their
-// loss counts only where a fitting states it.
+// loss counts only where a fitting states it. One whose place could not be read may be
+// at either end.
 func (v *validation) reservoirEnds() {
 	has := map[string][2]bool{}
 	for i := range v.Fittings {
 		f := &v.Fittings[i]
 		if p := v.pipe[f.Pipe]; p != nil && entranceOrExit(f.Kind) {
 			h := has[p.Name]
-			if f.At > p.Length/2 {
-				h[1] = true
-			} else {
-				h[0] = true
-			}
+			h[0] = h[0] || !(f.At > p.Length/2)
+			h[1] = h[1] || !(f.At <= p.Length/2)
 			has[p.Name] = h
 		}
 	}
@@ -146,7 +146,7 @@ func (v *validation) reservoirEnds() {
 		for side, name := range []string{p.From, p.To} {
 			if at := v.point[name]; at != nil && at.Kind == Reservoir && !has[p.Name][side] {
 				v.notice(p.Source, []string{"from", "to"}[side], name, fmt.Sprintf("pipe %s ends at reservoir %s without an entrance or exit fitting, so no loss is reckoned there", p.Name, name),
-					"add the fitting to fittings.csv, unless the end is measured from a tap beyond it")
+					"add the fitting to fittings.csv if there is a loss")
 			}
 		}
 	}

@@ -111,7 +111,7 @@ func (v *validation) accuracy(g *Gauge) {
 		switch {
 		case r.V <= 0:
 			v.fatal(g.Source, "resolution", "", "must be above nought", "write the smallest step that can be read")
-		case r.V > g.Span()/10:
+		case g.Span() > 0 && r.V > g.Span()/10:
 			v.notice(g.Source, "resolution", "", fmt.Sprintf("is more than a tenth of the span of gauge %s", g.Name), "look at the number: it is the smallest step that can be read, in the gauge's unit")
 		}
 	}

@@ -47,8 +47,12 @@ func (v *validation) duty(m *Machine, k int) {
 }
 
 // parts divides the system where nothing joins it, all valves open, and looks for
-// parts that nothing feeds.
+// parts that nothing feeds. Where a pipe or machine leads to no known point, which was
+// told, there is no saying what hangs together.
 func (v *validation) parts() {
+	if v.dangling {
+		return
+	}
 	root := map[string]string{}
 	var find func(string) string
 	find = func(p string) string {

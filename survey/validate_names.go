@@ -6,11 +6,11 @@ import (
 	"unicode/utf8"
 )
 
-// Nearest gives the known name that takes the fewest single-letter edits to reach
-// from what was written, letter case, spaces, hyphens and underscores left out of the
-// count. It is empty where the nearest is further off than a third of the letters
-// written, or one for short names: a worse guess sends the reader the wrong way.
-// Of several as near the first is given.
+// Nearest gives the known name that takes the fewest slips to reach from what was
+// written: letters left out, added, mistaken or exchanged with their neighbour; letter
+// case, spaces, hyphens and underscores do not count. It is empty where the nearest is
+// further off than a third of the letters written, or one for short names: a worse guess
+// sends the reader the wrong way. Of several as near the first is given.
 func Nearest(written string, known []string) string {
 	w := []rune(plainName(written))
 	best, name := 1+max(1, len(w)/3), ""
@@ -34,22 +34,26 @@ var plain = strings.NewReplacer(" ", "", "_", "", "-", "", "\u00a0", "")
 
 func plainName(s string) string { return plain.Replace(strings.ToLower(s)) }
 
-// edits counts the insertions, deletions and replacements that turn a into b.
+// edits counts the insertions, deletions, replacements and exchanges of neighbours that
+// turn a into b (optimal string alignment). An exchange is one slip of the finger: asset
+// numbers are full of them.
 func edits(a, b []rune) int {
-	row := make([]int, len(b)+1)
+	older, old, row := make([]int, len(b)+1), make([]int, len(b)+1), make([]int, len(b)+1)
 	for j := range row {
 		row[j] = j
 	}
 	for i := range a {
-		diagonal := row[0]
+		older, old, row = old, row, older
 		row[0] = i + 1
 		for j := range b {
-			cost := diagonal
+			cost := 0
 			if a[i] != b[j] {
-				cost++
+				cost = 1
 			}
-			diagonal = row[j+1]
-			row[j+1] = min(cost, row[j]+1, row[j+1]+1)
+			row[j+1] = min(old[j]+cost, row[j]+1, old[j+1]+1)
+			if i > 0 && j > 0 && a[i] == b[j-1] && a[i-1] == b[j] {
+				row[j+1] = min(row[j+1], older[j-1]+1)
+			}
 		}
 	}
 	return row[len(b)]

@@ -51,10 +51,12 @@ func (v *validation) pipes() {
 func (v *validation) ends(at Source, from, to, what string) {
 	for _, e := range []struct{ column, name string }{{"from", from}, {"to", to}} {
 		if v.point[e.name] == nil {
+			v.dangling = true
 			v.unknown(at, e.column, e.name, "points.csv", v.pointNames())
 		}
 	}
 	if from != "" && from == to {
+		v.dangling = true
 		v.fatal(at, "to", to, fmt.Sprintf("the %s leads from a point to itself", what), "write the point at its other end")
 	}
 }

@@ -166,6 +166,7 @@ func (v *validation) readingGauge(r *Reading) {
 		v.fatal(r.Source, "reading", r.Written, "an absolute pressure is never below nought", "correct the number, or the kind of the gauge if it reads above atmosphere")
 	case pressure(r.Kind) && g.Kind == PressureGauge && r.Value < vacuum:
 		v.fatal(r.Source, "reading", r.Written, "is below a vacuum", "correct the number or its unit")
+	case g.Low >= g.High: // told of the gauge
 	case r.Value < g.Low-slack(g) || r.Value > g.High+slack(g):
 		v.notice(r.Source, "reading", r.Written, fmt.Sprintf("is off the scale of gauge %s, %s", g.Name, scale(g)), "look at the number, its unit and the gauge's number")
 	}
@@ -205,6 +206,9 @@ type outside struct {
 
 func (v *validation) outOfRound(r *Reading) *outside {
 	round := v.round[r.Round]
+	if !round.End.IsZero() && round.End.Before(round.Start) {
+		return nil // told of the round
+	}
 	if r.Time.IsZero() || !(!round.Start.IsZero() && r.Time.Before(round.Start) || !round.End.IsZero() && r.Time.After(round.End)) {
 		return nil
 	}

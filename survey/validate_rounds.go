@@ -171,7 +171,7 @@ func (v *validation) conditionItem(c *Condition) bool {
 
 func (v *validation) conditionValue(c *Condition) {
 	if c.SD.OK && c.SD.V < 0 {
-		v.fatal(c.Source, "sd", figures(c.SD.V), "is below nought", "correct the sign")
+		v.fatal(c.Source, "sd", "", "is below nought", "correct the sign")
 	}
 	if !c.Value.OK {
 		return

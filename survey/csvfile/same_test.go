@@ -3,8 +3,6 @@ package csvfile
 import (
 	"encoding/csv"
 	"math"
-	"os"
-	"path/filepath"
 	"sort"
 	"strconv"
 	"strings"
@@ -18,33 +16,6 @@ import (
 
 	"tapround/survey"
 )
-
-// sample reads the files of a sample survey.
-func sample(t testing.TB, name string) map[string]string {
-	t.Helper()
-	out := map[string]string{}
-	for _, pattern := range []string{"*.csv", "readings/*.csv"} {
-		paths, err := filepath.Glob(filepath.Join("testdata/samples", name, pattern))
-		if err != nil {
-			t.Fatal(err)
-		}
-		for _, p := range paths {
-			b, err := os.ReadFile(p)
-			if err != nil {
-				t.Fatal(err)
-			}
-			rel, err := filepath.Rel(filepath.Join("testdata/samples", name), p)
-			if err != nil {
-				t.Fatal(err)
-			}
-			out[filepath.ToSlash(rel)] = string(b)
-		}
-	}
-	if len(out) < 9 {
-		t.Fatalf("only %d files", len(out))
-	}
-	return out
-}
 
 func mapFiles(files map[string]string, f func(name, text string) string) map[string]string {
 	out := map[string]string{}
@@ -139,7 +110,7 @@ func TestSameInEveryDialect(t *testing.T) {
 		}},
 	} {
 		t.Run(way.name, func(t *testing.T) {
-			for name, files := range map[string]map[string]string{"good": good(), "s1": sample(t, "s1")} {
+			for name, files := range map[string]map[string]string{"good": good(), "s1": folderText("testdata/samples/s1")} {
 				// A letter beyond ASCII, for the encodings to get wrong.
 				files["points.csv"] = strings.Replace(files["points.csv"], ",0,0,", ",0,0,Büro 3 – Süd", 1)
 				want, _ := read(t, files)
