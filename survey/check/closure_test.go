@@ -327,3 +327,18 @@ func TestClosureAllowsForTheGauge(t *testing.T) {
 	says(t, a.Statement, "0.7")
 	says(t, a.Evidence, "T3 shows 101.00 m", "m above once allowance is made for what gauge G2 shows elsewhere")
 }
+
+func TestDropOf(t *testing.T) {
+	s := site()
+	reading(s, "A", "T2").Gauge = "G1"
+	shift(s, "A", "T3", 0.4)
+	ws := newView(s, headsOf(s), customary).atRestIn("A")
+	m, _ := meanOf(ws)
+	moved := append([]witness(nil), ws...)
+	moved[1].head.Value += 0.2
+	moved[2].head.Value -= 0.3
+	n, _ := meanOf(moved)
+	if got, want := m.dropOf(1, 2, 0.2, -0.3), m.chi2-n.chi2; math.Abs(got-want) > 1e-9*m.chi2 {
+		t.Errorf("drop %v, want %v", got, want)
+	}
+}

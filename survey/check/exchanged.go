@@ -3,6 +3,7 @@ package check
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"tapround/survey"
 )
@@ -16,14 +17,21 @@ func (v *view) exchanged(r round, m mean, worst suspect) (survey.Alert, []witnes
 	var best []witness
 	var bi, bj int
 	bestChi2 := math.Inf(1)
+	wanted := worst.z()*worst.z() + math.Pow(v.limits.exchanged.value, 2)
 	for i := range m.ws {
 		for j := i + 1; j < len(m.ws); j++ {
 			if !exchangeable(m.ws[i], m.ws[j]) {
 				continue
 			}
 			for _, withLine := range []bool{true, false} {
-				ws := append([]witness(nil), m.ws...)
-				ws[i].head, ws[j].head = v.exchange(ws[i].head, ws[j].head, withLine)
+				a, b := v.exchange(m.ws[i].head, m.ws[j].head, withLine)
+				// Gauges of other accuracy change the covariance, so what is foretold
+				// without that decides only what is looked at in full.
+				if m.dropOf(i, j, a.Value-m.ws[i].value(), b.Value-m.ws[j].value()) < wanted/2 {
+					continue
+				}
+				ws := slices.Clone(m.ws)
+				ws[i].head, ws[j].head = a, b
 				n, ok := meanOf(ws)
 				if !ok || n.chi2 >= bestChi2 || !v.within(n, i) || !v.within(n, j) {
 					continue
@@ -32,7 +40,7 @@ func (v *view) exchanged(r round, m mean, worst suspect) (survey.Alert, []witnes
 			}
 		}
 	}
-	if best == nil || m.chi2-bestChi2 < worst.z()*worst.z()+math.Pow(v.limits.exchanged.value, 2) {
+	if best == nil || m.chi2-bestChi2 < wanted {
 		return survey.Alert{}, nil, false
 	}
 	a, b := m.ws[bi].head, m.ws[bj].head

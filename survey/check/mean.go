@@ -63,6 +63,8 @@ type mean struct {
 	p        *mat.SymDense // inverse covariance
 	level, w float64       // common head and 1'P1
 	chi2     float64
+	pull     []float64 // P(y - m)
+	ones     []float64 // P1
 }
 
 // meanOf is false where the covariance cannot be inverted.
@@ -75,23 +77,34 @@ func meanOf(ws []witness) (mean, bool) {
 		}
 	}
 	var chol mat.Cholesky
-	m := mean{ws: ws, p: mat.NewSymDense(n, nil)}
+	m := mean{ws: ws, p: mat.NewSymDense(n, nil), pull: make([]float64, n), ones: make([]float64, n)}
 	if !chol.Factorize(c) || chol.InverseTo(m.p) != nil {
 		return m, false
 	}
 	for i := range ws {
 		for j := range ws {
 			m.level += m.p.At(i, j) * ws[j].value()
-			m.w += m.p.At(i, j)
+			m.ones[i] += m.p.At(i, j)
 		}
+		m.w += m.ones[i]
 	}
 	m.level /= m.w
 	for i := range ws {
 		for j := range ws {
-			m.chi2 += (ws[i].value() - m.level) * m.p.At(i, j) * (ws[j].value() - m.level)
+			m.pull[i] += m.p.At(i, j) * (ws[j].value() - m.level)
 		}
+		m.chi2 += (ws[i].value() - m.level) * m.pull[i]
 	}
 	return m, true
+}
+
+// dropOf is how much less chi2 would be were witnesses i and j to show di and dj more,
+// the covariance staying as it is.
+func (m mean) dropOf(i, j int, di, dj float64) float64 {
+	linear := di*m.pull[i] + dj*m.pull[j]
+	square := di*di*m.p.At(i, i) + dj*dj*m.p.At(j, j) + 2*di*dj*m.p.At(i, j)
+	shift := di*m.ones[i] + dj*m.ones[j]
+	return -(2*linear + square - shift*shift/m.w)
 }
 
 // measure fills size and standard uncertainty of a suspect; false where nothing is left
@@ -102,10 +115,8 @@ func (m mean) measure(x *suspect) bool {
 	}
 	score, aPa, aP1 := 0.0, 0.0, 0.0
 	for _, i := range x.members {
-		for j := range m.ws {
-			score += m.p.At(i, j) * (m.ws[j].value() - m.level)
-			aP1 += m.p.At(i, j)
-		}
+		score += m.pull[i]
+		aP1 += m.ones[i]
 		for _, j := range x.members {
 			aPa += m.p.At(i, j)
 		}

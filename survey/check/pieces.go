@@ -41,6 +41,7 @@ func cutUp(s *survey.Survey, cuts map[string][]float64) *pieces {
 
 func (p *pieces) root(i int) int {
 	for p.parent[i] != i {
+		p.parent[i] = p.parent[p.parent[i]] // keeps long lines of pipes short
 		i = p.parent[i]
 	}
 	return i

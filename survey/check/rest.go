@@ -15,7 +15,7 @@ func aboveRest(v *view) []survey.Alert {
 	var out []survey.Alert
 	for _, t := range v.s.Taps {
 		for _, r := range v.rounds {
-			feed, ok := v.feed(r, t)
+			feed, ok := r.feed(t)
 			if !ok {
 				continue
 			}
@@ -32,46 +32,60 @@ func aboveRest(v *view) []survey.Alert {
 	return out
 }
 
-// feed gives the highest stated level of the reservoirs that can feed a tap in a round
-// in which water flows there; ok is false where the tap is at rest or could be raised above it.
-func (v *view) feed(r round, t survey.Tap) (survey.Condition, bool) {
-	if _, still := r.still.open(t); still {
-		return survey.Condition{}, false
-	}
-	p := cutUp(v.s, shutCuts(v.s, r.force))
+// feeds says, of each piece of the system in a round, the highest stated level of the
+// reservoirs that can feed it. Pieces with a running pump, an inflow, a flow or a level
+// to be estimated are not in it.
+type feeds struct {
+	pieces *pieces
+	level  map[int]survey.Condition
+}
+
+func (v *view) feedsOf(f survey.RoundConditions) feeds {
+	p := cutUp(v.s, shutCuts(v.s, f))
 	for _, m := range v.s.Machines {
-		if !r.force.Stopped[m.Name] {
+		if !f.Stopped[m.Name] {
 			p.join(p.points[m.From], p.points[m.To])
 		}
 	}
-	part := p.of(t)
+	out := feeds{p, map[int]survey.Condition{}}
+	unsure := map[int]bool{}
 	for _, m := range v.s.Machines {
-		if m.Kind == survey.Pump && !r.force.Stopped[m.Name] && p.at(m.From) == part {
-			return survey.Condition{}, false
+		if m.Kind == survey.Pump && !f.Stopped[m.Name] {
+			unsure[p.at(m.From)] = true
 		}
 	}
-	var highest survey.Condition
 	for _, x := range v.s.Points {
-		if p.at(x.Name) != part {
-			continue
-		}
-		for _, d := range r.force.DrawOffs[x.Name] {
+		i := p.at(x.Name)
+		for _, d := range f.DrawOffs[x.Name] {
 			if !d.Value.OK || d.Value.V < 0 {
-				return survey.Condition{}, false
+				unsure[i] = true
 			}
 		}
 		if x.Kind != survey.Reservoir {
 			continue
 		}
-		l, ok := r.force.Levels[x.Name]
-		if !ok || !l.Value.OK {
-			return survey.Condition{}, false
+		l := f.Levels[x.Name]
+		if !l.Value.OK {
+			unsure[i] = true
 		}
-		if !highest.Value.OK || l.Value.V > highest.Value.V {
-			highest = l
+		if highest, ok := out.level[i]; !ok || l.Value.V > highest.Value.V {
+			out.level[i] = l
 		}
 	}
-	return highest, highest.Value.OK
+	for i := range unsure {
+		delete(out.level, i)
+	}
+	return out
+}
+
+// feed gives the level that a tap's head cannot exceed in a round; ok is false where the
+// tap is at rest, or where that is not certain.
+func (r round) feed(t survey.Tap) (survey.Condition, bool) {
+	if _, still := r.still.open(t); still {
+		return survey.Condition{}, false
+	}
+	l, ok := r.feeds.level[r.feeds.pieces.of(t)]
+	return l, ok
 }
 
 // aboveOwnRest compares a flowing head with the no-flow head of the same tap: of

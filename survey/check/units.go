@@ -34,7 +34,7 @@ func strayUnits(v *view) []survey.Alert {
 			if n < 3 || away <= high-low || away <= v.limits.amongOthers.value*h.U() {
 				continue
 			}
-			feed, fed := v.feed(r, v.taps[h.Tap])
+			feed, fed := r.feed(v.taps[h.Tap])
 			impossible := fed && h.Value-feed.Value.V > v.limits.amongOthers.value*h.U()
 			// The last tap of a line rightly lies somewhat outside the others.
 			margin := high - low + v.limits.apart.value*h.U()

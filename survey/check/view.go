@@ -27,6 +27,7 @@ type round struct {
 	force survey.RoundConditions
 	heads []survey.Head
 	still still
+	feeds feeds
 }
 
 func newView(s *survey.Survey, heads []survey.Head, l limits) *view {
@@ -56,7 +57,7 @@ func newView(s *survey.Survey, heads []survey.Head, l limits) *view {
 		}
 		// In the order of the taps, so that the order of the lines decides nothing.
 		slices.SortStableFunc(x.heads, func(a, b survey.Head) int { return cmp.Compare(order[a.Tap], order[b.Tap]) })
-		x.still = v.stillness(x.force)
+		x.still, x.feeds = v.stillness(x.force), v.feedsOf(x.force)
 		v.rounds = append(v.rounds, x)
 	}
 	return v
