@@ -161,20 +161,20 @@ func (p *Plan) analyse() {
 
 // Factor is one goroutine's numeric object.
 type Factor struct {
-	p         *Plan
-	values    []float64
-	li        []int
-	lx, d     []float64
-	y, w      []float64
-	pattern   []int
-	flag, nnz []int
+	p           *Plan
+	values      []float64
+	li          []int
+	lx, d       []float64
+	y, w, r, dx []float64
+	pattern     []int
+	flag, nnz   []int
 }
 
 // NewFactor makes room for the values and the factor.
 func (p *Plan) NewFactor() *Factor {
 	n := p.n
 	return &Factor{p: p, values: make([]float64, len(p.rowIdx)), li: make([]int, p.lPtr[n]), lx: make([]float64, p.lPtr[n]),
-		d: make([]float64, n), y: make([]float64, n), w: make([]float64, n), pattern: make([]int, n), flag: make([]int, n), nnz: make([]int, n)}
+		d: make([]float64, n), y: make([]float64, n), w: make([]float64, n), r: make([]float64, n), dx: make([]float64, n), pattern: make([]int, n), flag: make([]int, n), nnz: make([]int, n)}
 }
 
 // NotPositive says at which row of the caller's matrix a pivot was not positive.
@@ -268,7 +268,7 @@ func (f *Factor) Solve(b, x []float64) {
 // SolveRefined solves with one step of iterative refinement and returns the largest
 // residual over the largest entry of b.
 func (f *Factor) SolveRefined(b, x []float64) float64 {
-	r, dx := make([]float64, f.p.n), make([]float64, f.p.n)
+	r, dx := f.r, f.dx
 	f.Solve(b, x)
 	f.residual(b, x, r)
 	f.Solve(r, dx)
