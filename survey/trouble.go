@@ -2,6 +2,7 @@ package survey
 
 import (
 	"fmt"
+	"strconv"
 	"strings"
 )
 
@@ -46,6 +47,17 @@ func (s Severity) String() string {
 
 // MarshalText lets a severity stand as its word in JSON.
 func (s Severity) MarshalText() ([]byte, error) { return []byte(s.String()), nil }
+
+// UnmarshalText reads the word back, so that a stored result can be drawn again.
+func (s *Severity) UnmarshalText(text []byte) error {
+	for _, v := range []Severity{Notice, SetAside, Fatal} {
+		if v.String() == string(text) {
+			*s = v
+			return nil
+		}
+	}
+	return fmt.Errorf("%q is no severity", text)
+}
 
 // Problem is a cell, a row or a table that is not as it should be. Text is the
 // value exactly as written; Reason says what is wrong; Remedy what to do.
@@ -126,4 +138,18 @@ func (m Maybe) MarshalJSON() ([]byte, error) {
 		return []byte("null"), nil
 	}
 	return fmt.Appendf(nil, "%.12g", m.V), nil
+}
+
+// UnmarshalJSON reads a number or null back.
+func (m *Maybe) UnmarshalJSON(data []byte) error {
+	if string(data) == "null" {
+		*m = Maybe{}
+		return nil
+	}
+	v, err := strconv.ParseFloat(string(data), 64)
+	if err != nil {
+		return err
+	}
+	*m = Some(v)
+	return nil
 }
