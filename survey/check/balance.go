@@ -13,12 +13,34 @@ import (
 // it and what is stated as drawn off there. The parts are what is left when the system
 // is cut at its meters; one with a reservoir or an outlet in it, or with a draw-off to
 // be estimated, has no balance. Two meters in a row on one pipe bound a part of their own.
+// What is left over in several rounds between the same meters, with one sign, is told once.
 func balance(v *view) []survey.Alert {
-	var out []survey.Alert
+	var order []string
+	found := map[string][]leftOver{}
 	for _, r := range v.rounds {
-		out = append(out, v.balanceOf(r)...)
+		for _, x := range v.balanceOf(r) {
+			key := fmt.Sprint(x.meters, x.q > 0)
+			if found[key] == nil {
+				order = append(order, key)
+			}
+			found[key] = append(found[key], x)
+		}
+	}
+	var out []survey.Alert
+	for _, key := range order {
+		out = append(out, v.imbalance(found[key]))
 	}
 	return out
+}
+
+// leftOver is the flow into a zone that is not accounted for in a round.
+type leftOver struct {
+	flow
+	round          string
+	meters         []string
+	in, out, drawn float64
+	unit           unit.Unit
+	sources        []survey.Source
 }
 
 // zone is a part of the system between meters.
@@ -35,7 +57,7 @@ type signed struct {
 	sign float64
 }
 
-func (v *view) balanceOf(r round) []survey.Alert {
+func (v *view) balanceOf(r round) []leftOver {
 	cuts := shutCuts(v.s, r.force)
 	type meter struct {
 		survey.Head
@@ -89,58 +111,75 @@ func (v *view) balanceOf(r round) []survey.Alert {
 			z.sources = append(z.sources, d.Source)
 		}
 	}
-	var out []survey.Alert
+	var out []leftOver
 	for _, z := range order {
-		if !z.open && len(z.meters) > 0 {
-			out = append(out, v.imbalance(r, z)...)
+		if z.open || len(z.meters) == 0 {
+			continue
+		}
+		if x := v.leftOver(r, z); math.Abs(x.q) > v.limits.apart.value*x.u {
+			out = append(out, x)
 		}
 	}
 	return out
 }
 
-// imbalance gives an alert where more is left over than meters and draw-offs may be off.
-func (v *view) imbalance(r round, z *zone) []survey.Alert {
-	in, out, variance := 0.0, 0.0, z.drawn.u*z.drawn.u
-	var names []string
-	var sources []survey.Source
-	show := unit.LitrePerSecond
+// leftOver adds up a zone.
+func (v *view) leftOver(r round, z *zone) leftOver {
+	x := leftOver{round: r.Name, drawn: z.drawn.q, unit: unit.LitrePerSecond}
+	variance := z.drawn.u * z.drawn.u
 	for i, m := range z.meters {
 		if m.sign > 0 {
-			in += m.Value
+			x.in += m.Value
 		} else {
-			out += m.Value
+			x.out += m.Value
 		}
 		for j, o := range z.meters {
 			variance += m.sign * o.sign * covariance(m.Head, o.Head, i == j)
 		}
-		names = append(names, m.Tap)
-		sources = append(sources, m.Sources()...)
+		x.meters = append(x.meters, m.Tap)
+		x.sources = append(x.sources, m.Sources()...)
 		if u, err := unit.Parse(v.gauge(m.Head).Unit, unit.Flow); err == nil {
-			show = u
+			x.unit = u
 		}
 	}
-	left, u := in-out-z.drawn.q, math.Sqrt(math.Max(variance, 0))
-	if math.Abs(left) <= v.limits.apart.value*u {
-		return nil
-	}
-	where := "between the meters at " + strings.Join(names, " and ")
-	if len(names) == 1 {
-		where = "beyond the meter at " + names[0]
-	}
-	size := show.Format(math.Abs(left), u)
-	a := survey.Alert{Rule: "flow does not balance", Subject: strings.Join(names, " "), Limit: v.limits.apart.String(),
-		Statement: fmt.Sprintf("In round %s %s go in %s and are not accounted for.", r.Name, size, where),
-		Evidence: fmt.Sprintf("in by meter %s, out by meter %s, drawn off %s; left over %s (± one standard uncertainty), %.1f times its standard uncertainty",
-			figure(show, in), figure(show, out), figure(show, z.drawn.q), size, math.Abs(left)/u),
-		Action: "Look for a draw-off that nobody wrote down; read the meters again and check their units and zeros.",
-		Stay:   math.Abs(left) > v.limits.stay.value*u, Sources: append(sources, z.sources...)}
-	if left < 0 {
-		a.Statement = fmt.Sprintf("In round %s %s more come out %s than go in.", r.Name, size, where)
-		a.Action = "Look for a feed that nobody wrote down; read the meters again and check their units, zeros and directions."
-	}
-	return []survey.Alert{a}
+	x.sources = append(x.sources, z.sources...)
+	x.flow = flow{x.in - x.out - x.drawn, math.Sqrt(math.Max(variance, 0))}
+	return x
 }
 
-func figure(u unit.Unit, si float64) string {
-	return unit.Significant(u.FromSI(si), 4) + " " + u.Name
+// imbalance words what is left over between the same meters in one round or several.
+func (v *view) imbalance(xs []leftOver) survey.Alert {
+	worst := xs[0]
+	a := survey.Alert{Rule: "flow does not balance", Subject: strings.Join(worst.meters, " "), Limit: v.limits.apart.String()}
+	var rounds, evidence []string
+	for _, x := range xs {
+		if math.Abs(x.q)/x.u > math.Abs(worst.q)/worst.u {
+			worst = x
+		}
+		rounds = append(rounds, x.round)
+		evidence = append(evidence, fmt.Sprintf("round %s: in by meter %s, out by meter %s, drawn off %s, left over %s, %.1f times its standard uncertainty",
+			x.round, x.figure(x.in), x.figure(x.out), x.figure(x.drawn), x.unit.Format(x.q, x.u), math.Abs(x.q)/x.u))
+		a.Sources = append(a.Sources, x.sources...)
+	}
+	a.Evidence = strings.Join(evidence, "; ")
+	a.Stay = math.Abs(worst.q) > v.limits.stay.value*worst.u
+	where := "between the meters at " + strings.Join(worst.meters, " and ")
+	if len(worst.meters) == 1 {
+		where = "beyond the meter at " + worst.meters[0]
+	}
+	size := worst.unit.Format(math.Abs(worst.q), worst.u)
+	if len(xs) > 1 {
+		size += " (round " + worst.round + ")"
+	}
+	a.Statement = fmt.Sprintf("In %s water goes in %s that is not accounted for: %s.", roundsNamed(rounds), where, size)
+	a.Action = "Look for a draw-off that nobody wrote down; read the meters again and check their units and zeros."
+	if worst.q < 0 {
+		a.Statement = fmt.Sprintf("In %s more water comes out %s than goes in: %s.", roundsNamed(rounds), where, size)
+		a.Action = "Look for a feed that nobody wrote down; read the meters again and check their units, zeros and directions."
+	}
+	return a
+}
+
+func (x leftOver) figure(si float64) string {
+	return fmt.Sprintf("%.4g %s", x.unit.FromSI(si), x.unit.Name)
 }
