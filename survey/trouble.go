@@ -132,12 +132,12 @@ func (m Maybe) Or(def float64) float64 {
 	return def
 }
 
-// MarshalJSON writes null for a number that is not stated.
+// MarshalJSON writes null for a number that is not stated, and every digit of one that is.
 func (m Maybe) MarshalJSON() ([]byte, error) {
 	if !m.OK {
 		return []byte("null"), nil
 	}
-	return fmt.Appendf(nil, "%.12g", m.V), nil
+	return strconv.AppendFloat(nil, m.V, 'g', -1, 64), nil
 }
 
 // UnmarshalJSON reads a number or null back.
