@@ -32,6 +32,8 @@ type Fit struct {
 	J *mat.Dense
 	R []float64
 
+	lower  []float64 // bounds of U; equal for one that is pinned
+	upper  []float64
 	spread []float64 // prior variance of each unknown in U: 1, or freeCause squared
 	weight []float64 // per observation: 1, 0 where left out, or a robust weight
 	data   *mat.Cholesky
@@ -48,6 +50,8 @@ type Options struct {
 	FreeCauses bool
 	// Start is the starting point in U; nil: prior means and each unknown's Start.
 	Start []float64
+	// Pin holds unknowns, by their place, at a value of theta.
+	Pin map[int]float64
 	// Weight divides each observation's own variance; 0 leaves it out; nil: all 1.
 	Weight []float64
 }
@@ -73,7 +77,7 @@ func (m *Model) Fit(causes []Unknown, o Options) (*Fit, error) {
 		return nil, err
 	}
 	n, k := len(m.Obs), len(f.U)
-	p := lsq.Problem{M: n + k, N: k, Lower: make([]float64, k), Upper: make([]float64, k),
+	p := lsq.Problem{M: n + k, N: k, Lower: f.lower, Upper: f.upper,
 		Residuals: func(u, r []float64) error {
 			if err := f.evaluate(u, r[:n]); err != nil {
 				return err
@@ -90,9 +94,6 @@ func (m *Model) Fit(causes []Unknown, o Options) (*Fit, error) {
 			}
 			return f.derive(u, j)
 		},
-	}
-	for c, x := range f.Unknowns {
-		p.Lower[c], p.Upper[c] = x.bounds()
 	}
 	res, err := lsq.Solve(p, f.U, lsq.Settings{Negligible: negligible})
 	if err != nil {
@@ -135,6 +136,7 @@ func (m *Model) prepare(causes []Unknown, o Options) (*Fit, error) {
 	f.Unknowns = append(append(f.Unknowns, m.Unknowns...), causes...)
 	k := len(f.Unknowns)
 	f.U, f.spread, f.AtBound = make([]float64, k), make([]float64, k), make([]bool, k)
+	f.lower, f.upper = make([]float64, k), make([]float64, k)
 	f.R, f.J = make([]float64, len(m.Obs)), mat.NewDense(len(m.Obs), k, nil)
 	for c, x := range f.Unknowns {
 		f.spread[c] = 1
@@ -145,8 +147,12 @@ func (m *Model) prepare(causes []Unknown, o Options) (*Fit, error) {
 		if c < len(o.Start) {
 			f.U[c] = o.Start[c]
 		}
-		lo, hi := x.bounds()
-		f.U[c] = clamp(f.U[c], lo, hi)
+		f.lower[c], f.upper[c] = x.bounds()
+		if theta, ok := o.Pin[c]; ok {
+			u := (theta - x.Center) / x.SD
+			f.lower[c], f.upper[c] = u, u
+		}
+		f.U[c] = clamp(f.U[c], f.lower[c], f.upper[c])
 	}
 	f.weight = m.weights(o.Weight)
 	return f, nil
@@ -245,9 +251,8 @@ func (f *Fit) settle() error {
 	if err := f.derive(f.U, f.J); err != nil {
 		return err
 	}
-	for c, x := range f.Unknowns {
-		lo, hi := x.bounds()
-		f.AtBound[c] = f.U[c] <= lo || f.U[c] >= hi
+	for c := range f.Unknowns {
+		f.AtBound[c] = f.U[c] <= f.lower[c] || f.U[c] >= f.upper[c]
 	}
 	f.cov = nil
 	var err error

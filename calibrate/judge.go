@@ -161,3 +161,6 @@ func (f *Fit) ItemExcess(round int, kind, item string) float64 {
 	sound, _ := friction.Minor(q, math.Exp(m.base.LnK[flat]), fit.Bore, c.Gravity)
 	return now - sound
 }
+
+// PriorShare is what the prior row of unknown k adds to Phi.
+func (f *Fit) PriorShare(k int) float64 { return f.U[k] * f.U[k] / f.spread[k] }

@@ -37,9 +37,8 @@ func (m *Model) Refit(causes []Unknown, o Options) (*Fit, error) {
 		}
 		before, moved := f.Phi, false
 		for scale := 1.0; scale > 1e-4; scale /= 3 {
-			for c, x := range f.Unknowns {
-				lo, hi := x.bounds()
-				trial[c] = clamp(f.U[c]+scale*step[c], lo, hi)
+			for c := range trial {
+				trial[c] = clamp(f.U[c]+scale*step[c], f.lower[c], f.upper[c])
 			}
 			if f.evaluate(trial, r) != nil {
 				continue // this far the works cannot be solved: step less
@@ -110,14 +109,13 @@ func (f *Fit) dataStep() ([]float64, error) {
 			}
 		}
 		again := false
-		for c, x := range f.Unknowns {
+		for c := range step {
 			if f.AtBound[c] {
 				step[c] = 0
 				continue
 			}
 			step[c] = step[c]*f.spread[c] - f.U[c]
-			lo, hi := x.bounds()
-			if (f.U[c] <= lo && step[c] < 0) || (f.U[c] >= hi && step[c] > 0) {
+			if (f.U[c] <= f.lower[c] && step[c] < 0) || (f.U[c] >= f.upper[c] && step[c] > 0) {
 				f.AtBound[c], again = true, true
 			}
 		}

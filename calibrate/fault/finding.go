@@ -107,26 +107,33 @@ func (d *Diagnosis) mixUp(a *Accepted) float64 {
 func (d *Diagnosis) size(a *Accepted, f *survey.Finding) {
 	m, fit := d.Model, d.Final
 	set := func(v, lo, hi float64, u string) {
-		f.Estimate, f.Low, f.High, f.Unit = survey.Some(v), survey.Some(lo), survey.Some(hi), u
+		f.Estimate, f.Unit = survey.Some(v), u
+		if lo > 0 || !lossKind(a.Kind) { // an end that the readings leave open is not stated
+			f.Low = survey.Some(lo)
+		}
+		if !math.IsInf(hi, 0) {
+			f.High = survey.Some(hi)
+		}
 	}
 	theta, sd := fit.Theta(a.place), fit.ThetaSD(a.place)
 	switch a.Kind {
 	case survey.FouledPipe:
 		l := m.LinkIndex(a.Item)
 		v := fit.LnRough(l)
-		_, s := fit.ItemTheta(a.place)
-		s = math.Hypot(s, fit.LawSD(a.place))
+		lo, hi := d.better(a, v, m.ExpectedLnRough(l))
+		law := 1.96 * fit.LawSD(a.place)
+		lo, hi = v-math.Hypot(v-lo, law), v+math.Hypot(hi-v, law)
 		scale, u := 1e3, "mm"
 		if m.Survey.Info.FrictionLaw == survey.HazenWilliams {
 			scale, u = 1, "C"
 		}
-		set(scale*math.Exp(v), scale*math.Exp(v-1.96*s), scale*math.Exp(v+1.96*s), u)
+		set(scale*math.Exp(v), scale*math.Exp(lo), scale*math.Exp(hi), u)
 		f.Expected = survey.Some(scale * math.Exp(m.ExpectedLnRough(l)))
 	case survey.PartClosedValve, survey.BlockedFitting:
 		flat := m.FlatFitting(a.Item)
 		v := fit.LnKOf(flat)
-		_, s := fit.ItemTheta(a.place)
-		set(math.Exp(v), math.Exp(v-1.96*s), math.Exp(v+1.96*s), "K")
+		lo, hi := d.better(a, v, m.ExpectedLnK(flat))
+		set(math.Exp(v), math.Exp(lo), math.Exp(hi), "K")
 		f.Expected = survey.Some(math.Exp(m.ExpectedLnK(flat)))
 	case survey.GaugeOff:
 		g := m.GaugeNamed(a.Item)

@@ -114,10 +114,20 @@ func plain(c Cause) string {
 	return c.Name()
 }
 
+// half is the standard uncertainty that the interval speaks of.
 func half(f *survey.Finding) float64 { return (f.High.V - f.Low.V) / (2 * 1.96) }
 
 func between(f *survey.Finding) string {
-	return fmt.Sprintf("%s (95 %%: %s to %s)", unit.Significant(f.Estimate.V, 2), unit.Significant(f.Low.V, 2), unit.Significant(f.High.V, 2))
+	v := unit.Significant(f.Estimate.V, 2)
+	switch {
+	case f.Low.OK && f.High.OK:
+		return fmt.Sprintf("%s (95 %%: %s to %s)", v, unit.Significant(f.Low.V, 2), unit.Significant(f.High.V, 2))
+	case f.Low.OK:
+		return fmt.Sprintf("%s (95 %%: above %s)", v, unit.Significant(f.Low.V, 2))
+	case f.High.OK:
+		return fmt.Sprintf("%s (95 %%: below %s)", v, unit.Significant(f.High.V, 2))
+	}
+	return v
 }
 
 func (d *Diagnosis) sizeWords(f *survey.Finding) string {
