@@ -86,6 +86,9 @@ func Candidates(m *calibrate.Model, s Settings) []Cause {
 	for i, p := range sv.Pipes {
 		add(survey.FouledPipe, p.Name, "", m.Fouled(i, s.Spreads), s.Odds.Pipe)
 	}
+	for _, g := range groups(sv) {
+		add(survey.FouledPipe, g, "group", m.FouledGroup(g, s.Spreads), s.Odds.Pipe)
+	}
 	for i, f := range sv.Fittings {
 		switch {
 		case f.Kind.CanBePartClosed():
@@ -131,6 +134,21 @@ func Candidates(m *calibrate.Model, s Settings) []Cause {
 		}
 	}
 	return out
+}
+
+// groups lists the pipe groups of at least two pipes, in the order of the table.
+func groups(s *survey.Survey) []string {
+	count := map[string]int{}
+	var order []string
+	for _, p := range s.Pipes {
+		if p.Group == "" {
+			continue
+		}
+		if count[p.Group]++; count[p.Group] == 2 {
+			order = append(order, p.Group)
+		}
+	}
+	return order
 }
 
 func usedInstruments(m *calibrate.Model) (gauges, taps map[string]bool) {

@@ -118,6 +118,11 @@ func (d *Diagnosis) size(a *Accepted, f *survey.Finding) {
 	theta, sd := fit.Theta(a.place), fit.ThetaSD(a.place)
 	switch a.Kind {
 	case survey.FouledPipe:
+		if a.Unknown.Kind == "group" {
+			set(math.Exp(theta), math.Exp(theta-1.96*sd), math.Exp(theta+1.96*sd), "factor")
+			f.Expected = survey.Some(1)
+			return
+		}
 		l := m.LinkIndex(a.Item)
 		v := fit.LnRough(l)
 		lo, hi := d.better(a, v, m.ExpectedLnRough(l))

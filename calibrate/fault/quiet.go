@@ -141,7 +141,7 @@ func (d *Diagnosis) Smallest() []Smallest {
 		return nil
 	}
 	for i, c := range d.Causes {
-		if !lossKind(c.Kind) {
+		if !lossKind(c.Kind) || c.Unknown.Kind == "group" {
 			continue
 		}
 		x := Smallest{Kind: "pipe", Item: c.Item}

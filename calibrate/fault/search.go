@@ -282,12 +282,55 @@ func (d *Diagnosis) forward() ([]Cause, error) {
 	at := d.start()
 	for at != nil && len(chosen) < d.set.MostCauses && at.fit.DoF() > 2 {
 		c, t, ok, err := d.best(chosen, at)
-		if err != nil || !ok {
-			return chosen, err
+		if err != nil {
+			return nil, err
+		}
+		if !ok {
+			if chosen, at, ok, err = d.pair(chosen, at); err != nil || !ok {
+				return chosen, err
+			}
+			continue
 		}
 		chosen, at = append(chosen, c), t
 	}
 	return chosen, nil
+}
+
+// pair looks for two causes that only together explain what is left, among the six that
+// come nearest alone, where the readings still contradict the works (global test below 1
+// per cent). Each of the two must be worth its place once the other is there.
+func (d *Diagnosis) pair(chosen []Cause, at *trial) ([]Cause, *trial, bool, error) {
+	if p, ok := at.fit.GlobalP(); !ok || p > 0.01 || len(chosen)+2 > d.set.MostCauses {
+		return chosen, at, false, nil
+	}
+	list, err := d.ranked(chosen, at, 2)
+	if err != nil {
+		return nil, nil, false, err
+	}
+	limit := d.Limit * d.Limit
+	var best *trial
+	for i := 0; i < len(list) && i < 6; i++ {
+		one := list[i].trial
+		if one == nil {
+			continue
+		}
+		more, err := d.ranked(one.causes, one, limit)
+		if err != nil {
+			return nil, nil, false, err
+		}
+		for _, r := range more {
+			if r.trial == nil || one.free-r.trial.free < limit || at.free-r.trial.free < 2*limit {
+				continue
+			}
+			if r.trial.score() > at.score() && (best == nil || r.trial.score() > best.score()) {
+				best = r.trial
+			}
+		}
+	}
+	if best == nil {
+		return chosen, at, false, nil
+	}
+	return best.causes, best, true, nil
 }
 
 // fitOf refits a set of causes: it is taken from the trials already made, or started from

@@ -198,6 +198,9 @@ func (d *Diagnosis) CostOf(a *Accepted) (Cost, bool) {
 		return Cost{}, false
 	}
 	link := d.Model.LinkIndex(d.pipeOf(a.Cause))
+	if link < 0 {
+		return Cost{}, false // a group has no one flow
+	}
 	round, q := d.busiest(link)
 	if q == 0 {
 		return Cost{}, false

@@ -361,3 +361,59 @@ func TestSlips(t *testing.T) {
 		t.Errorf("exchanged: %d slips, accepted %q", len(d.Slips), verdict(d))
 	}
 }
+
+// TestFouledGroup: pipes of one history that are all alike rough are one finding, not three.
+func TestFouledGroup(t *testing.T) {
+	tw := &twin{s: main3()}
+	tw.s.Fittings = nil
+	for i := range tw.s.Pipes {
+		tw.s.Pipes[i].Group = "1931"
+	}
+	for _, p := range []string{"A", "B", "C"} {
+		tw.tap(p, "", 0, p)
+	}
+	tw.spoil = func(s *survey.Survey) {
+		for i := range s.Pipes {
+			s.Pipes[i].Roughness.V *= 12
+		}
+	}
+	d := tw.run(t)
+	if got := verdict(d); got != "fouled-pipe:1931" {
+		t.Errorf("got %q", got)
+	}
+	for _, f := range d.Findings() {
+		if f.Item == "1931" && (f.Estimate.V < 6 || f.Estimate.V > 24 || !strings.Contains(f.Statement, "All pipes")) {
+			t.Errorf("factor %.1f, truth 12: %s", f.Estimate.V, f.Statement)
+		}
+	}
+}
+
+// TestWornPump: a pump below its curve is told from a scaled main where a gauge stands at
+// its delivery.
+func TestWornPump(t *testing.T) {
+	tw := &twin{s: main3()}
+	tw.s.Fittings = nil
+	tw.s.Points = append(tw.s.Points, survey.Point{Name: "S", Kind: survey.Junction})
+	tw.s.Pipes[0].To = "S"
+	tw.s.Machines = []survey.Machine{{Name: "PU", From: "S", To: "A", Kind: survey.Pump, Duty: []survey.DutyPoint{{Flow: 0, Head: 30}, {Flow: 0.03, Head: 26}, {Flow: 0.06, Head: 16}}}}
+	for _, p := range []string{"S", "A", "B", "C"} {
+		tw.tap(p, "", 0, p)
+	}
+	for i := range tw.s.Gauges {
+		if tw.s.Gauges[i].Kind == survey.PressureGauge {
+			tw.s.Gauges[i].High = 1e6
+		}
+	}
+	tw.spoil = func(s *survey.Survey) {
+		// A worn impeller: 12 % less head at every flow.
+		s.Machines = append([]survey.Machine(nil), s.Machines...)
+		duty := append([]survey.DutyPoint(nil), s.Machines[0].Duty...)
+		for i := range duty {
+			duty[i].Head *= 0.88
+		}
+		s.Machines[0].Duty = duty
+	}
+	if got := verdict(tw.run(t)); got != "machine-off-curve:PU" {
+		t.Errorf("got %q", got)
+	}
+}

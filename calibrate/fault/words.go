@@ -34,6 +34,10 @@ func (d *Diagnosis) words(a *Accepted, f *survey.Finding) {
 		f.Advice = d.openAdvice(a)
 		f.Settle = d.settle(a)
 		f.Cautions = []string{cautionPressure, cautionSurge, cautionLocal}
+	case a.Kind == survey.FouledPipe && a.Unknown.Kind == "group":
+		f.Statement = fmt.Sprintf("All pipes of group %s carry less than sound ones: their common factor of roughness (or C) is %s.", a.Item, between(f))
+		f.Advice = fmt.Sprintf("Take a coupon from one pipe of %s: what it shows, the others are likely to have.", a.Item)
+		f.Cautions = []string{cautionPressure, cautionWater, cautionLocal}
 	case a.Kind == survey.FouledPipe:
 		f.Statement = fmt.Sprintf("Pipe %s carries less than a sound one: %s, where %s is expected%s.", a.Item, d.roughnessWords(f), d.expectedWords(f), cost)
 		f.Advice = fmt.Sprintf("Take a coupon or a calliper reading of %s before choosing between cleaning, lining and renewal: pressure readings cannot part a rough wall from a lost bore. %s",
@@ -95,6 +99,9 @@ func names(rs []Rival) []string {
 func plain(c Cause) string {
 	switch c.Kind {
 	case survey.FouledPipe:
+		if c.Unknown.Kind == "group" {
+			return "the pipes of group " + c.Item + " fouled"
+		}
 		return "pipe " + c.Item + " fouled"
 	case survey.PartClosedValve:
 		return "valve " + c.Item + " part closed"
