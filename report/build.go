@@ -45,6 +45,16 @@ func New(in Input) *Result {
 	r.Residuals = differenceRows(d.Final)
 	r.Losses = lossRows(d.Final)
 	r.Costs = costs(d)
+	for _, s := range d.Smallest() {
+		row := VisibleRow{Item: s.Item, Kind: s.Kind, Seen: s.Seen, Unit: s.Unit, Words: s.Words}
+		if s.Seen {
+			row.Value = known(s.Value)
+		}
+		r.Visible = append(r.Visible, row)
+	}
+	for _, t := range d.Ties() {
+		r.Ties = append(r.Ties, fmt.Sprintf("%s and %s: the readings fix their sum better than either (correlation %.2f)", t.A, t.B, t.Rho))
+	}
 	routes := in.Routes
 	if routes == nil {
 		routes = d.Model.MainRoutes(3)

@@ -29,8 +29,12 @@ type Result struct {
 	Residuals  []ResidualRow  `json:"residuals"`
 	Losses     []LossRow      `json:"losses"`
 	Costs      []Cost         `json:"costs"` // none where the survey states no price
-	Profiles   []Profile      `json:"profiles"`
-	Cautions   []string       `json:"cautions"`
+	// Visible is the smallest fault of each item that this survey would have found four
+	// times in five; Ties the pairs of which the readings fix the sum only.
+	Visible  []VisibleRow `json:"visible"`
+	Ties     []string     `json:"ties"`
+	Profiles []Profile    `json:"profiles"`
+	Cautions []string     `json:"cautions"`
 }
 
 // Tool names the program and its version.
@@ -145,6 +149,15 @@ type LossRow struct {
 	ExcessU     survey.Maybe
 	Probability survey.Maybe
 	Items       []string
+}
+
+// VisibleRow says how small a fault of one item would have shown.
+type VisibleRow struct {
+	Item, Kind string
+	Seen       bool // any reading depends on it
+	Value      survey.Maybe
+	Unit       string
+	Words      string
 }
 
 // XY is one vertex of a line: chainage along the route and level, m.

@@ -102,7 +102,7 @@ func (d *Diagnosis) belowAtmosphere() []survey.Finding {
 func (d *Diagnosis) notCovered() []survey.Finding {
 	var out []survey.Finding
 	for _, s := range d.Smallest() {
-		if s.Practical {
+		if s.Practical || (s.Kind != "pipe" && s.Kind != "fitting") {
 			continue
 		}
 		f := survey.Finding{Kind: survey.NotCovered, Item: s.Item, Grade: survey.Hint, Unit: s.Unit,
@@ -112,68 +112,6 @@ func (d *Diagnosis) notCovered() []survey.Finding {
 			f.Estimate = survey.Some(s.Value)
 		}
 		out = append(out, f)
-	}
-	return out
-}
-
-// Smallest is the smallest fault of one item that this survey finds with 80 % power.
-type Smallest struct {
-	Kind, Item string
-	Seen       bool    // the readings see it at all
-	Practical  bool    // it is of a size worth finding
-	Value      float64 // in Unit: mm, C, K
-	Unit       string
-	Words      string
-}
-
-// power80 is the normal quantile that 80 % power adds to a limit.
-const power80 = 0.8416
-
-// Smallest gives it for every pipe and every valve or strainer, from the linear
-// signatures at the sound fit.
-func (d *Diagnosis) Smallest() []Smallest {
-	var out []Smallest
-	if !d.Sound.Converged {
-		return nil
-	}
-	s, err := screen(d.Sound, d.Causes)
-	if err != nil {
-		return nil
-	}
-	for i, c := range d.Causes {
-		if !lossKind(c.Kind) || c.Unknown.Kind == "group" {
-			continue
-		}
-		x := Smallest{Kind: "pipe", Item: c.Item}
-		if c.Unknown.Kind == "fitting" {
-			x.Kind = "fitting"
-		}
-		if s.info[i] == 0 {
-			x.Words = "no reading depends on it"
-			out = append(out, x)
-			continue
-		}
-		x.Seen = true
-		size := (d.Limit + power80) / math.Sqrt(s.info[i]) // of theta, linear
-		switch {
-		case x.Kind == "fitting":
-			k := math.Exp(d.Model.ExpectedLnK(d.Model.FlatFitting(c.Item)))
-			x.Value, x.Unit = k*(1+size), "K"
-			x.Practical = x.Value < 500
-			x.Words = fmt.Sprintf("only a K above %s would have shown", unit.Significant(x.Value, 2))
-		case c.Unknown.Quantity == "c_value":
-			l := d.Model.LinkIndex(c.Item)
-			x.Value, x.Unit = math.Exp(d.Model.ExpectedLnRough(l))/math.Pow(1+size*1.852, 0.54), "C"
-			x.Practical = x.Value > 30
-			x.Words = fmt.Sprintf("only a C below %s would have shown", unit.Significant(x.Value, 2))
-		default:
-			l := d.Model.LinkIndex(c.Item)
-			rise := roughnessFor(d.Model, d.Sound, c, size)
-			x.Value, x.Unit = 1e3*math.Exp(d.Model.ExpectedLnRough(l)+rise), "mm"
-			x.Practical = x.Value/1e3 < 0.1*d.Model.Survey.Pipes[l].Bore
-			x.Words = fmt.Sprintf("only an equivalent roughness above %s mm would have shown", unit.Significant(x.Value, 2))
-		}
-		out = append(out, x)
 	}
 	return out
 }

@@ -8,6 +8,7 @@ import (
 	"tapround/report"
 	"tapround/report/internal/say"
 	"tapround/survey"
+	"tapround/survey/unit"
 )
 
 // table is one table of the page. The first cell of a row heads it.
@@ -211,4 +212,17 @@ func flows(r *report.Result) table {
 func litres(m survey.Maybe) survey.Maybe {
 	m.V *= 1000
 	return m
+}
+
+// visible is the smallest fault of each item that the survey would have found.
+func visible(rows []report.VisibleRow) table {
+	t := table{Caption: "Smallest fault that would have shown", Head: heads("Item", "What", "#From", "Unit", "In words")}
+	for _, r := range rows {
+		from := ""
+		if r.Value.OK {
+			from = unit.Significant(r.Value.V, 2)
+		}
+		t.add(text(r.Item), text(strings.ReplaceAll(r.Kind, "-", " ")), number(from), text(r.Unit), text(r.Words))
+	}
+	return t
 }

@@ -37,6 +37,8 @@ type view struct {
 	Losses    table
 	LossNote  string
 	Fitted    table
+	Visible   table
+	Ties      []string
 	Gauges    table
 	Levels    table
 	Flows     table
@@ -113,6 +115,10 @@ func newView(r *report.Result) *view {
 	v.pictures(r.Profiles)
 	v.Losses, v.LossNote = losses(r.Losses)
 	v.Fitted, v.Gauges, v.Levels = fitted(r.Parameters)
+	v.Visible = visible(r.Visible)
+	for _, t := range r.Ties {
+		v.Ties = append(v.Ties, say.Clean(t))
+	}
 	v.Flows, v.DrawOffs = flows(r), drawOffs(r)
 	v.data(r)
 	v.method(r)

@@ -84,7 +84,9 @@ func TestSmoothPipes(t *testing.T) {
 	for _, folder := range folders {
 		d := fitFolder(t, folder)
 		for _, f := range d.Findings() {
-			if f.Grade != survey.Hint {
+			// The points of the narrowest pipe come in two batches that differ by some per
+			// cent, which is rightly said of its meters; the pipe itself is smooth.
+			if f.Grade != survey.Hint && f.Kind != survey.GaugeOff {
 				t.Errorf("%s: %s %s %s", filepath.Base(folder), f.Grade, f.Kind, f.Item)
 			}
 		}
