@@ -84,9 +84,49 @@ func (m *Model) shortest(from int) map[int]Way {
 	return out
 }
 
-// MainRoutes are the ways worth a picture: from a reservoir, each the one that
-// passes most taps not yet on a route, at most the number given.
+// MainRoutes are the ways worth a picture: from a reservoir with the water, each the one
+// that passes most taps not yet on a route, at most the number given. Where no way runs with
+// the water all along, any will do.
 func (m *Model) MainRoutes(most int) []Way {
+	if out := m.routes(most, m.withTheWater()); len(out) > 0 {
+		return out
+	}
+	return m.routes(most, func(Way) bool { return true })
+}
+
+// withTheWater tells whether the water runs along a way, or at least not against it, in the
+// busiest round at the expected values.
+func (m *Model) withTheWater() func(Way) bool {
+	e, err := m.Expected()
+	if err != nil {
+		return func(Way) bool { return true }
+	}
+	busiest, top := 0, -1.0
+	for r, st := range e.w.states {
+		sum := 0.0
+		for _, q := range st.Flow {
+			sum += math.Abs(q)
+		}
+		if sum > top {
+			busiest, top = r, sum
+		}
+	}
+	st := e.w.states[busiest]
+	return func(w Way) bool {
+		for _, l := range w.Legs {
+			q := st.Flow[l.Link]
+			if l.X1 > l.X2 {
+				q = -q
+			}
+			if q < -1e-6 || st.Closed[l.Link] {
+				return false
+			}
+		}
+		return true
+	}
+}
+
+func (m *Model) routes(most int, wanted func(Way) bool) []Way {
 	onRoute := make([]bool, len(m.Survey.Taps))
 	var out []Way
 	var all []Way
@@ -96,7 +136,7 @@ func (m *Model) MainRoutes(most int) []Way {
 		}
 		ways := m.shortest(i)
 		for j := range m.Survey.Points {
-			if w, ok := ways[j]; ok && len(w.Legs) > 0 {
+			if w, ok := ways[j]; ok && len(w.Legs) > 0 && wanted(w) {
 				all = append(all, w)
 			}
 		}
