@@ -99,12 +99,18 @@ func Agreement(f report.FitFacts) string {
 	if !f.P.OK {
 		return "There are no more readings than unknowns, so nothing can be checked against anything."
 	}
-	s := "With the causes named, the " + Plural(f.Readings, "reading", "readings") + " and the works agree within their uncertainties"
+	// Where no cause was allowed the last fit is that of sound works.
+	sound := f.SoundP.OK && f.ChiSquare == f.SoundChi
+	with, still := "With the causes named", " still"
+	if sound {
+		with, still = "With everything sound", ""
+	}
+	s := with + ", the " + Plural(f.Readings, "reading", "readings") + " and the works agree within their uncertainties"
 	if f.P.V < 0.01 {
-		s = "With the causes named, the " + Plural(f.Readings, "reading", "readings") + " and the works still differ by more than their uncertainties allow; something is not explained"
+		s = with + ", the " + Plural(f.Readings, "reading", "readings") + " and the works" + still + " differ by more than their uncertainties allow; something is not explained"
 	}
 	s += ": chance alone would make differences as large in " + Chance(f.P.V) + " of such surveys."
-	if f.SoundP.OK {
+	if f.SoundP.OK && !sound {
 		s += " With everything sound it would be " + Chance(f.SoundP.V) + "."
 	}
 	return s

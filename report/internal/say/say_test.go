@@ -102,10 +102,13 @@ func TestWorst(t *testing.T) {
 }
 
 func TestAgreement(t *testing.T) {
-	if s := Agreement(report.FitFacts{Readings: 58, P: some(0.54), SoundP: some(0)}); s != "With the causes named, the 58 readings and the works agree within their uncertainties: chance alone would make differences as large in 54 % of such surveys. With everything sound it would be less than 0.01 %." {
+	if s := Agreement(report.FitFacts{Readings: 58, P: some(0.54), SoundP: some(0), ChiSquare: 40, SoundChi: 400}); s != "With the causes named, the 58 readings and the works agree within their uncertainties: chance alone would make differences as large in 54 % of such surveys. With everything sound it would be less than 0.01 %." {
 		t.Error(s)
 	}
 	if s := Agreement(report.FitFacts{Readings: 58, P: some(0.0001)}); s != "With the causes named, the 58 readings and the works still differ by more than their uncertainties allow; something is not explained: chance alone would make differences as large in 0.01 % of such surveys." {
+		t.Error(s)
+	}
+	if s := Agreement(report.FitFacts{Readings: 9, P: some(0.7), SoundP: some(0.7), ChiSquare: 7, SoundChi: 7}); s != "With everything sound, the 9 readings and the works agree within their uncertainties: chance alone would make differences as large in 70 % of such surveys." {
 		t.Error(s)
 	}
 	if s := Agreement(report.FitFacts{}); s != "There are no more readings than unknowns, so nothing can be checked against anything." {
