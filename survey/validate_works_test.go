@@ -127,6 +127,9 @@ var worksCases = []validateGroup{
 		{"contraction to a bore that no pipe has", []change{{"fittings.csv", "V1,P1,450,gate-valve,,0.15,,1.2", "V1,P2,800,contraction,120,0.15,,1.2"}}, []string{
 			`notice: fittings.csv:3, bore "120 mm": no other pipe at C has this bore; correct the bore here, or in pipes.csv`,
 		}},
+		{"contraction to a bore that a pipe elsewhere has", []change{{"fittings.csv", "V1,P1,450,gate-valve,,0.15,,1.2", "V1,P3,0,contraction,200,0.15,,1.2"}}, []string{
+			`notice: fittings.csv:3, bore "200 mm": no other pipe at C has this bore; correct the bore here, or in pipes.csv`,
+		}},
 		{"contraction to the next pipe's bore", []change{{"fittings.csv", "V1,P1,450,gate-valve,,0.15,,1.2", "V1,P2,800,contraction,100,0.15,,1.2"}}, nil},
 		{"enlargement from the pipe before", []change{{"fittings.csv", "V1,P1,450,gate-valve,,0.15,,1.2", "V1,P3,0,contraction,150,0.15,,1.2"}}, nil},
 		{"entrance at a junction", []change{{"fittings.csv", "V1,P1,450,gate-valve", "V1,P1,450,exit"}}, []string{

@@ -27,6 +27,9 @@ var brokenFolders = []brokenGroup{
 		{"range, other end first", []change{{"readings.csv", "1.62", "5.6 - 5.4"}}, []string{
 			`set aside: readings.csv:2, reading "5.6 - 5.4": is a range whose second end is the smaller; write the smaller end first`,
 		}},
+		{"open point, other decimal commas", []change{{"readings.csv", "", "round;tap;kind;gauge;reading;unit\n1;T1;static;G1;1.620;bar\n2;T1;static;G1;1,62;bar\n"}}, []string{
+			`error: readings.csv:2, reading "1.620": may be 1,620 or 1620, for other numbers of this file have decimal commas; write 1,620 or 1620`,
+		}},
 		{"ditto in the number", []change{{"readings.csv", "1.62", `"`}}, []string{
 			`set aside: readings.csv:2, reading "\"": is a ditto mark, and this column holds numbers; write the number again`,
 		}},
@@ -115,6 +118,7 @@ var brokenFolders = []brokenGroup{
 		{"unknown zone", []change{{"survey.csv", "Europe/London", "Europe/Londn"}}, []string{
 			`error: survey.csv:3, value "Europe/Londn": is not a known time zone; write an IANA name such as Europe/London or Australia/Perth, or UTC; Etc/GMT-1 is one hour ahead of UTC all year`,
 		}},
+		{"another name of UTC", []change{{"survey.csv", "Europe/London", "gmt"}}, nil},
 		{"the machine's zone", []change{{"survey.csv", "Europe/London", "Local"}}, []string{
 			`error: survey.csv:3, value "Local": is not the name of a time zone; write an IANA name such as Europe/London or Australia/Perth, or UTC; Etc/GMT-1 is one hour ahead of UTC all year`,
 		}},

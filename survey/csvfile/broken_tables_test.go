@@ -22,6 +22,10 @@ var brokenTables = []brokenGroup{
 		{"unknown column", []change{{"pipes.csv", "group", "grupe"}}, []string{
 			"notice: pipes.csv:1, grupe: the heading is not known; the column was not read; the headings of pipes.csv are pipe, from, to, length [m], bore [mm], material, laid, roughness [mm], c_value, group, note, spread",
 		}},
+		{"missing column of units", []change{{"readings.csv", "unit", "uint"}}, []string{
+			`error: readings.csv:1, unit: the column is missing; did you mean it by "uint"? Write unit`,
+			"notice: readings.csv:1, uint: the heading is not known; the column was not read; the nearest known heading is unit",
+		}},
 		{"unknown column, nothing near", []change{{"pipes.csv", "group", "colour of lid"}}, []string{
 			"notice: pipes.csv:1, colour of lid: the heading is not known; the column was not read; the headings of pipes.csv are pipe, from, to, length [m], bore [mm], material, laid, roughness [mm], c_value, group, note, spread",
 		}},
@@ -105,6 +109,10 @@ var brokenTables = []brokenGroup{
 		{"bench check of an unknown gauge", []change{{"gauge_checks.csv", "G1,0", "G01,0"}}, []string{
 			`error: gauge_checks.csv:2, gauge "G01": gauges.csv does not have it; did you mean G1? If not, add G01 to gauges.csv`,
 		}},
+		{"bench check marked as absolute on a gauge above atmosphere", []change{{"gauge_checks.csv", "0.02,bar", "0.02,bar abs"}}, []string{
+			`error: gauge_checks.csv:2, unit "bar abs": is an absolute pressure, but the gauge's kind says it reads above atmosphere; did you mean bar? units of pressure are bar, kPa, psi, m, ft, mbar, MPa, Pa, kgf/cm2, atm, in, cm, mm, inHg, mmHg, Torr, psf`,
+		}},
+		{"bench check of an absolute gauge", []change{{"gauge_checks.csv", "G1,0,0.02,bar", "G2,0,0.02,bar abs"}}, nil},
 		{"duty of an unknown machine", []change{{"duty.csv", "M1,0", "X7,0"}}, []string{
 			`error: duty.csv:2, machine "X7": machines.csv does not have it; add it to machines.csv, or correct the name`,
 		}},

@@ -65,17 +65,12 @@ func (sp spec) find(cell, name string) (int, bool) {
 }
 
 // cutUnit splits "length [m]" into name and unit; round brackets are taken for square
-// ones. bracket is 0 where the heading has none.
+// ones, and may have others within: (bar(g)). bracket is 0 where the heading has none.
 func cutUnit(heading string) (name, unit string, bracket byte) {
 	for _, b := range []string{"[]", "()"} {
-		open := strings.LastIndexByte(heading, b[0])
+		open := strings.IndexByte(heading, b[0])
 		if open > 0 && strings.HasSuffix(heading, b[1:]) {
-			u := strings.TrimSpace(heading[open+1 : len(heading)-1])
-			// A unit may have round brackets itself: bar(g).
-			if b == "()" && strings.Count(heading, "(") > 1 {
-				continue
-			}
-			return strings.TrimSpace(heading[:open]), u, b[0]
+			return strings.TrimSpace(heading[:open]), strings.TrimSpace(heading[open+1 : len(heading)-1]), b[0]
 		}
 	}
 	return heading, "", 0

@@ -97,6 +97,77 @@ func TestHeadingsOfTheFormat(t *testing.T) {
 	}
 }
 
+// Columns that a table cannot do without, by the file format: names, places, what was
+// measured. Each in turn is taken out of the good survey.
+func TestRequiredColumns(t *testing.T) {
+	required := map[string]string{
+		"survey.csv": "item value", "points.csv": "point kind elevation", "pipes.csv": "pipe from to length bore", "levels.csv": "pipe at elevation",
+		"fittings.csv": "fitting pipe at kind", "machines.csv": "machine from to kind", "duty.csv": "machine flow head", "taps.csv": "tap elevation",
+		"gauges.csv": "gauge kind low high unit", "gauge_checks.csv": "gauge applied indicated unit", "rounds.csv": "round",
+		"conditions.csv": "round item condition value unit", "readings.csv": "round tap kind gauge reading unit",
+		"requirements.csv": "requirement kind item limit", "loggers.csv": "channel file tap kind unit",
+	}
+	for _, sp := range tables() {
+		for i, c := range sp.columns {
+			files := good()
+			rows := strings.SplitAfter(files[sp.file], "\n")
+			head := strings.Split(strings.TrimSuffix(rows[0], "\n"), ",")
+			if sp.file == readingsFile {
+				delete(files, "readings/crew-2.csv")
+			}
+			head[i] = "tally"
+			files[sp.file] = strings.Join(head, ",") + "\n" + strings.Join(rows[1:], "")
+			_, ps := read(t, files)
+			want := slices.Contains(strings.Fields(required[sp.file]), c.name)
+			told := slices.ContainsFunc(ps, func(p survey.Problem) bool {
+				return p.Severity == survey.Fatal && p.Line == 1 && p.Column == c.name && p.Reason == "the column is missing"
+			})
+			if told != want {
+				t.Errorf("%s without %s: told %v, want %v", sp.file, c.name, told, want)
+			}
+		}
+	}
+}
+
+// Tables that a survey cannot do without; the others may be missing without a word.
+func TestRequiredTables(t *testing.T) {
+	required := "points.csv pipes.csv taps.csv gauges.csv rounds.csv conditions.csv readings.csv"
+	for _, sp := range tables() {
+		files := with(map[string]string{sp.file: ""})
+		if sp.file == readingsFile {
+			delete(files, "readings/crew-2.csv")
+		}
+		_, ps := read(t, files)
+		told := slices.ContainsFunc(ps, func(p survey.Problem) bool {
+			return p.Severity == survey.Fatal && p.File == sp.file && strings.HasPrefix(p.Reason, "the table is missing: ")
+		})
+		if want := slices.Contains(strings.Fields(required), sp.file); told != want {
+			t.Errorf("%s missing: told %v, want %v", sp.file, told, want)
+		}
+	}
+}
+
+// What is nobody's table is left alone: hidden and lock files, pictures, results, logs.
+func TestOtherFiles(t *testing.T) {
+	s, ps := read(t, with(map[string]string{".levels.csv": "x", "~$pipes.csv": "x", "readings/.crew-3.csv": "x", "photo 12.jpg": "x", "results/heads.csv": "x",
+		"logs/east.csv": "x", "readings/old/crew-1.csv": "x", "notes.txt": "x"}))
+	if len(ps) != 0 || len(s.Inputs) != 16 {
+		t.Errorf("%d files on record\n%s", len(s.Inputs), lines(ps))
+	}
+}
+
+func TestCutUnit(t *testing.T) {
+	for heading, want := range map[string][2]string{
+		"length [m]": {"length", "m"}, "length[m]": {"length", "m"}, "length ( m )": {"length", "m"}, "reading [bar(g)]": {"reading", "bar(g)"},
+		"reading (bar(g))": {"reading", "bar(g)"}, "length": {"length", ""}, "[m]": {"[m]", ""}, "depth [mm": {"depth [mm", ""}, "depth mm]": {"depth mm]", ""},
+		"efficiency [%]": {"efficiency", "%"}, "length []": {"length", ""},
+	} {
+		if name, u, _ := cutUnit(heading); name != want[0] || u != want[1] {
+			t.Errorf("%q is cut into %q and %q", heading, name, u)
+		}
+	}
+}
+
 // Headings as crews write them.
 func TestSpellings(t *testing.T) {
 	for _, c := range []struct{ file, heading, column string }{
@@ -210,6 +281,18 @@ lines"
 	check("speed", c[2].Value.V, 48*math.Pi)
 	if c[0].Round != survey.EveryRound || c[1].Kind != survey.DrawOff || c[3].Kind != survey.ShutOff || c[3].Value.OK {
 		t.Errorf("%+v", c)
+	}
+}
+
+// What instruments write for no reading is no reading; one decimal more says that it was
+// read.
+func TestSentinels(t *testing.T) {
+	for cell, aside := range map[string]bool{"9999": true, "-9999": true, "99999": true, "-99999": true, "9999.9": true, "-9999.9": true,
+		"9999.0": false, "999": false, "9998": false, "-9999.00": false} {
+		s, _ := read(t, edit(t, "readings.csv", "1.62,bar", cell+",Pa"))
+		if got := s.Readings[0].SetAside != ""; got != aside {
+			t.Errorf("%s is set aside: %v", cell, got)
+		}
 	}
 }
 
