@@ -65,7 +65,7 @@ func (f *Fit) DoF() int {
 // hardly changes when ln k is lowered by five (a factor of 150).
 func (f *Fit) OpenBelow(k int) bool {
 	x := f.Unknowns[k]
-	if x.Kind != "pipe" || x.Quantity != "roughness" || f.Told(k) < 0.2 {
+	if x.Kind != "pipe" || x.Quantity != "roughness" || f.Told(k) < 0.5 {
 		return false
 	}
 	x.SD, x.Sign = 1, 0
