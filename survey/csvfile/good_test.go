@@ -91,7 +91,7 @@ func conserved(t reporter, s *survey.Survey, ps survey.Problems) {
 	}
 	for _, in := range s.Inputs {
 		heading := 0
-		if _, after, ok := strings.Cut(in.Understood, "heading in line "); ok {
+		if _, after, ok := strings.Cut(in.Understood, "heading line "); ok {
 			heading, _ = strconv.Atoi(after)
 		}
 		named := 0

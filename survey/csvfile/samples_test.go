@@ -187,8 +187,8 @@ func TestInputs(t *testing.T) {
 	s, _ := ReadFolder(os.DirFS("testdata/samples/s6"))
 	want := map[string]survey.Input{
 		// Digests by sha256sum of GNU coreutils.
-		"readings.csv": {SHA256: "342900a86522d6d53fd974ecea0ce2d1dfbd05e80761c9da0530a30f2f8873ef", Rows: 46, Used: 45, Understood: "UTF-8, semicolon between cells, decimal comma, heading in line 2"},
-		"pipes.csv":    {SHA256: "2c1ef1bd1052c7e8d94fdbdddc5595ead62e378b0a968c07ebafdbeb9cd14986", Rows: 12, Used: 12, Understood: "UTF-8 with a byte-order mark, semicolon between cells, decimal point, heading in line 2"},
+		"readings.csv": {SHA256: "342900a86522d6d53fd974ecea0ce2d1dfbd05e80761c9da0530a30f2f8873ef", Rows: 46, Used: 45, Understood: "UTF-8, semicolon-separated, decimal comma, heading line 2"},
+		"pipes.csv":    {SHA256: "2c1ef1bd1052c7e8d94fdbdddc5595ead62e378b0a968c07ebafdbeb9cd14986", Rows: 12, Used: 12, Understood: "UTF-8 with a byte-order mark, semicolon-separated, decimal point, heading line 2"},
 	}
 	seen := 0
 	for _, in := range s.Inputs {

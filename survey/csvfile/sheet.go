@@ -228,7 +228,7 @@ func (sh *sheet) take(text string, in *survey.Input) {
 	}
 	sh.spec.read(sh)
 	in.Rows = len(sh.body)
-	in.Understood += fmt.Sprintf(", %s between cells, %s, heading in line %d", delimName[delim], sh.marks.name(), records[top].line)
+	in.Understood += fmt.Sprintf(", %s-separated, %s, heading line %d", delimName[delim], sh.marks.name(), records[top].line)
 }
 
 var delimName = map[byte]string{',': "comma", ';': "semicolon", '\t': "tab"}

@@ -156,6 +156,58 @@ func TestOtherFiles(t *testing.T) {
 	}
 }
 
+// Rows are conserved in every table, whatever stands in them: one too short, one with a
+// word in every cell, and one twice over.
+func TestRowsConserved(t *testing.T) {
+	for _, sp := range tables() {
+		files := good()
+		text := files[sp.file]
+		rows := strings.Split(strings.TrimSuffix(text, "\n"), "\n")
+		junk := strings.Repeat("junk,", len(sp.columns)-1) + "junk"
+		files[sp.file] = text + "x\n" + junk + "\n" + rows[1] + "\n"
+		s, ps := read(t, files) // looks at the sums
+		i := slices.IndexFunc(s.Inputs, func(in survey.Input) bool { return in.File == sp.file })
+		in := s.Inputs[i]
+		if in.Rows != len(rows)+2 || in.Used >= in.Rows {
+			t.Errorf("%s: %d rows, %d used, of %d\n%s", sp.file, in.Rows, in.Used, len(rows)+2, lines(ps))
+		}
+	}
+}
+
+// A crew's sheet as it comes: lines above the heading, decimal commas and points, marks
+// for "the same", a range, a gap, a reading that could not be taken. Invented.
+func TestCrewSheet(t *testing.T) {
+	s, ps := read(t, with(map[string]string{"readings/crew-2.csv": `Mill Lane round 2;;;;;;;
+crew 2, J. and M.;;;;;;;
+
+Round;Time;Tap;Kind;Gage;Reading;Unit;Remarks
+2;2026-03-15 11:00;T1;static;G1;5,71;bar;H22 open, steady
+"        ;2026-03-15 11:05;T2;do.;"     ;5.4-5.6;"        ;jumping
+2;2026-03-15 11:10;T2;static;;78;psi;6" ferrule; G04? borrowed
+2;2026-03-15 11:15;T1;static;G1;n/a;bar;cap leaking
+2;2026-03-15 11:20;T1;static;G1;5,70;bar;! wrong cock
+`}))
+	want := `set aside: readings/crew-2.csv:7 "2;2026-03-15 11:10;T2;static;;78;psi;6\" ferrule;G04? borrowed": has 9 cells under 8 headings; fill up or take away cells until the row fits the heading; an empty cell needs its delimiter too
+set aside: readings/crew-2.csv:8, Reading "n/a": says that there is no value; read it again; if that is not possible nothing needs mending
+set aside: readings/crew-2.csv:9, Remarks "! wrong cock": set aside by the crew's remark; take the ! away to have it used
+notice: readings/crew-2.csv: numbers of this file have decimal points in some rows and decimal commas in others; each was read by its own mark; use one decimal mark in a file
+notice: readings/crew-2.csv:1 "Mill Lane round 2": 2 lines above the heading were passed over, the last is line 2; put # before lines that are not part of the table
+notice: readings/crew-2.csv:6, Reading "5.4-5.6": is a range; 5.5 was used, with half a range of 0.1 in its uncertainty
+notice: readings/crew-2.csv:6, Gage "\"": is a ditto mark; it was read as the cell above
+notice: readings/crew-2.csv:6, Kind "do.": is a ditto mark; it was read as the cell above
+notice: readings/crew-2.csv:6, Round "\"": is a ditto mark; it was read as the cell above
+notice: readings/crew-2.csv:6, Unit "\"": is a ditto mark; it was read as the cell above
+`
+	if got := lines(ps); got != want {
+		t.Errorf("got\n%s\nwant\n%s", got, want)
+	}
+	r := s.Readings[len(s.Readings)-5:]
+	if r[0].Value != 571000 || r[1].Value != 550000 || math.Abs(r[1].HalfRange-10000) > 1e-6 || r[1].Gauge != "G1" || r[1].Round != "2" || r[1].Kind != survey.Static ||
+		r[0].Remark != "H22 open, steady" || r[4].SetAside != "! wrong cock" || r[4].Value != 570000 {
+		t.Errorf("%+v", r)
+	}
+}
+
 func TestCutUnit(t *testing.T) {
 	for heading, want := range map[string][2]string{
 		"length [m]": {"length", "m"}, "length[m]": {"length", "m"}, "length ( m )": {"length", "m"}, "reading [bar(g)]": {"reading", "bar(g)"},
