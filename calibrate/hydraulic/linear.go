@@ -78,7 +78,7 @@ func (v *Solver) factoriseAbove(least float64) error {
 			v.entries[s.entry[i]] -= g
 		}
 	}
-	if s.rows == 0 {
+	if v.matrix == nil {
 		return nil
 	}
 	return v.matrix.Factorize(v.entries)
@@ -115,7 +115,9 @@ func (v *Solver) solve(smooth bool) bool {
 		z := columns[k]
 		clear(v.rhs)
 		v.addEnds(v.rhs, i, 1)
-		v.matrix.Solve(v.rhs, z)
+		if v.matrix != nil {
+			v.matrix.Solve(v.rhs, z)
+		}
 		d := v.slope[i]
 		for j, o := range v.odd {
 			small.Set(j, k, v.across(z, o))
@@ -173,7 +175,7 @@ func (v *Solver) base(s, b, x, y []float64) {
 			}
 		}
 		left := largest(v.rhs)
-		if left <= 1e-13*largest(x) || left > worst/4 || v.sys.rows == 0 {
+		if left <= 1e-13*largest(x) || left > worst/4 || v.matrix == nil {
 			return
 		}
 		worst = left

@@ -12,9 +12,10 @@ const (
 	// keeps the head of what fills it.
 	pressed = 1e-6
 	// Patterns settle in one or two rounds. After allAtOnce of them only the link that
-	// is furthest off switches, so that two cannot throw each other over for ever.
-	allAtOnce   = 4
-	mostPattern = 60
+	// is furthest off switches, so that two cannot throw each other over for ever; then
+	// every link may need a round of its own.
+	allAtOnce = 4
+	mostRound = 300
 )
 
 // guessPattern finds which one-way links close: with the barrier up the problem is one
@@ -52,10 +53,14 @@ func (v *Solver) settle() error {
 		}
 		worst := v.switchWrong(round < allAtOnce)
 		if worst < 0 {
-			return nil
+			var err error
+			if worst, err = v.settleIdle(); worst < 0 {
+				return err
+			}
 		}
-		if round == mostPattern {
-			return &Unsolvable{Cause: fmt.Sprintf("no steady state was found: %s opens and closes in turn", v.sys.title(worst)), Links: []string{v.sys.links[worst].Name}}
+		if round == mostRound {
+			name := v.sys.links[worst].Name
+			return &Unsolvable{Cause: "no steady state was found: one-way links open and close in turn, among them " + name, Links: []string{name}}
 		}
 	}
 }

@@ -10,7 +10,7 @@ import (
 // reads and differentiates the last solved one.
 type Solver struct {
 	sys    *System
-	matrix *sparse.Factor
+	matrix *sparse.Factor // nil: no junctions
 
 	// The round, copied.
 	lnRough, factor, ratio, jet []float64 // per link; ratio: speed over rated speed; jet: loss at 1 m3/s
@@ -70,8 +70,9 @@ func (s *System) NewSolver() *Solver {
 }
 
 // Solve finds heads and flows. warm is an earlier state of the same system to start
-// from, or nil; the answer does not depend on it. An error is an *Unsolvable that
-// names the cause; the solver then has no state to read.
+// from, or nil; the answer does not depend on it, unless a machine whose curve bends has
+// more than one duty. An error is an *Unsolvable that names the cause; the solver then
+// has no state to read.
 func (v *Solver) Solve(p *Parameters, c *Conditions, warm *State) (*State, error) {
 	v.state, v.tabulated, v.steps = nil, false, 0
 	if err := v.take(p, c); err != nil {
