@@ -24,7 +24,8 @@ type outcome struct {
 	failed                        bool
 	any, provenWrong, right, open bool
 	named                         string
-	inside, sized                 bool // the 95 % interval of the right finding holds the truth
+	covered                       map[string][2]int // by kind of unknown: intervals that hold the truth, intervals
+	inside, sized                 bool              // the 95 % interval of the right finding holds the truth
 }
 
 // TestStudy draws sound and faulty surveys, runs the product and counts. The plain run
@@ -111,6 +112,20 @@ func TestStudy(t *testing.T) {
 			seen, right, wrong = seen+kSeen, right+kRight+kOpen, wrong+kWrong
 		}
 	}
+	covered := map[string][2]int{}
+	for _, o := range byKind[""] {
+		for k, c := range o.covered {
+			covered[k] = [2]int{covered[k][0] + c[0], covered[k][1] + c[1]}
+		}
+	}
+	for _, k := range []string{"pipe", "fitting", "tap", "gauge", "draw-off"} {
+		c := covered[k]
+		share := float64(c[0]) / float64(c[1])
+		t.Logf("sound surveys, 95 %% intervals of each %s: %d of %d hold the truth (%.1f %%)", k, c[0], c[1], 100*share)
+		if share < 0.92 || c[1] == 0 {
+			t.Errorf("intervals of each %s hold the truth in %.1f %% only", k, 100*share)
+		}
+	}
 	rate := float64(alarms) / float64(sound)
 	t.Logf("sound: %d surveys, %d with a proven or likely finding (%.1f %%); found over 4 u: %d of %d (%.0f %%); wrong cause proven: %d; not computed: %d",
 		sound, alarms, 100*rate, right, seen, 100*float64(right)/float64(seen), wrong, failed)
@@ -126,6 +141,52 @@ func TestStudy(t *testing.T) {
 	if failed > 0 {
 		t.Errorf("%d surveys could not be computed", failed)
 	}
+}
+
+// coverage counts the 95 % intervals of a sound survey's unknowns that hold the truth.
+func coverage(s *synth, d *Diagnosis) map[string][2]int {
+	out := map[string][2]int{}
+	truth := map[string]float64{}
+	for _, p := range s.truth.Pipes {
+		truth["pipe "+p.Name] = p.Roughness.V
+	}
+	for _, f := range s.truth.Fittings {
+		truth["fitting "+f.Name] = f.K.V
+	}
+	for i, t := range s.truth.Taps {
+		truth["tap "+t.Name] = s.recorded.Taps[i].Elevation - t.Elevation
+	}
+	for g, o := range s.offset {
+		truth["gauge "+g] = o
+	}
+	drawn := map[string]int{}
+	for i, c := range s.truth.Conditions {
+		if c.Kind == survey.DrawOff {
+			key := fmt.Sprintf("draw-off %s %s %g", c.Item, c.Round, s.recorded.Conditions[i].Value.V)
+			drawn[key]++
+			truth[key] = c.Value.V
+		}
+	}
+	for k, u := range d.Model.Unknowns {
+		key := u.Kind + " " + u.Item
+		if u.Kind == "draw-off" {
+			if key = fmt.Sprintf("draw-off %s %s %g", u.Item, u.Round, u.Expected); drawn[key] > 1 {
+				continue // two rows of one value at one point cannot be told apart
+			}
+		}
+		want, ok := truth[key]
+		if !ok {
+			continue
+		}
+		_, lo, hi := d.Final.Whole(k)
+		c := out[u.Kind]
+		c[1]++
+		if lo <= want && want <= hi {
+			c[0]++
+		}
+		out[u.Kind] = c
+	}
+	return out
 }
 
 func runOne(kind survey.FindingKind, i int) outcome {
@@ -146,6 +207,8 @@ func runOne(kind survey.FindingKind, i int) outcome {
 	}
 	if s.fault != nil {
 		o.ratio = s.fault.ratio
+	} else {
+		o.covered = coverage(s, d)
 	}
 	for _, f := range d.Findings() {
 		if f.Grade == survey.Hint || f.Kind == survey.NotCovered || f.Kind == survey.BelowAtmosphere {

@@ -17,6 +17,8 @@ import (
 type synth struct {
 	recorded *survey.Survey // what the crew believes, with its readings
 	fault    *truthFault    // nil: sound
+	truth    *survey.Survey
+	offset   map[string]float64 // true offsets of the gauges, SI
 }
 
 // truthFault is what was made wrong. ratio is the largest falsification of a head, in
@@ -49,7 +51,8 @@ func newSynth(rng *rand.Rand, shape string, kind survey.FindingKind) *synth {
 	if err != nil {
 		return nil
 	}
-	if !read(rng, s, truth, m, e, f) {
+	offset := offsets(rng, s, f)
+	if !read(rng, s, truth, e, offset) {
 		return nil
 	}
 	if f != nil && f.kind == survey.LevelWrong {
@@ -64,7 +67,7 @@ func newSynth(rng *rand.Rand, shape string, kind survey.FindingKind) *synth {
 		unspoil(sound, s, f)
 		f.ratio = ratioOf(s, truth, sound, f)
 	}
-	return &synth{recorded: s, fault: f}
+	return &synth{recorded: s, fault: f, truth: truth, offset: offset}
 }
 
 // layout draws the works as recorded.
@@ -242,9 +245,8 @@ func unspoil(s, recorded *survey.Survey, f *truthFault) {
 	}
 }
 
-// read writes the readings that a crew would bring home; gauges are carried along and
-// change places between rounds.
-func read(rng *rand.Rand, s, truth *survey.Survey, m *calibrate.Model, e *calibrate.Expected, f *truthFault) bool {
+// offsets draws each gauge's error within its class.
+func offsets(rng *rand.Rand, s *survey.Survey, f *truthFault) map[string]float64 {
 	offset := map[string]float64{}
 	for _, g := range s.Gauges {
 		offset[g.Name] = g.Accuracy.V * g.Span() * (2*rng.Float64() - 1)
@@ -252,6 +254,12 @@ func read(rng *rand.Rand, s, truth *survey.Survey, m *calibrate.Model, e *calibr
 			offset[g.Name] = f.size * 1e3
 		}
 	}
+	return offset
+}
+
+// read writes the readings that a crew would bring home; gauges are carried along and
+// change places between rounds.
+func read(rng *rand.Rand, s, truth *survey.Survey, e *calibrate.Expected, offset map[string]float64) bool {
 	gravity := water.Gravity(s.Info.Latitude, s.Info.SiteLevel)
 	w := gravity * water.Density(s.Info.WaterTemperature)
 	shift := rng.IntN(5)
