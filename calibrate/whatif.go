@@ -70,10 +70,23 @@ func (x *WhatIf) Read(probes []hydraulic.Probe, weights []float64) Estimate {
 // Flow of a link under these draw-offs, m3/s.
 func (x *WhatIf) Flow(link int) float64 { return x.w.states[x.round].Flow[link] }
 
-// LevelSD is the uncertainty that a tap's level still has after the fit, m.
-func (f *Fit) LevelSD(tap string) float64 {
-	if k := f.Model.UnknownOf("tap", tap, "level_error"); k >= 0 {
-		return f.ThetaSD(k)
+// LevelError is what the fit says of a tap's recorded level, recorded minus true, m: a
+// reading there with a sound gauge shows it. A tap whose level is taken as exact has none.
+func (x *WhatIf) LevelError(tap string) Estimate {
+	if k := x.f.Model.UnknownOf("tap", tap, "level_error"); k >= 0 {
+		v, sd := x.f.ItemTheta(k)
+		return Estimate{Value: v, SD: sd}
 	}
-	return 0
+	return Estimate{}
+}
+
+// Offset is what the fit says of a gauge's offset, as head, m.
+func (x *WhatIf) Offset(gauge string) Estimate {
+	k := x.f.Model.UnknownOf("gauge", gauge, "offset")
+	if k < 0 {
+		return Estimate{}
+	}
+	v, sd := x.f.ItemTheta(k)
+	w := x.f.Model.Rounds[x.round].Density * x.f.Conditions(x.round).Gravity
+	return Estimate{Value: v / w, SD: sd / w}
 }

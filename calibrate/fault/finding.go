@@ -53,12 +53,40 @@ func (d *Diagnosis) finding(a *Accepted) survey.Finding {
 		f.Probability = survey.Some(a.whole())
 	}
 	d.evidence(a, &f)
-	if len(a.Class) > 0 && lossKind(a.Kind) {
+	doubts := d.doubts(a)
+	f.Evidence = append(f.Evidence, doubts...)
+	if lossKind(a.Kind) && (len(a.Class) > 0 || len(doubts) > 0) {
 		d.open(a, &f)
 	}
 	d.words(a, &f)
 	f.Sources = d.sources(a)
 	return f
+}
+
+// doubts are the conditions under which a cause must not be named alone, however well it
+// fits, with the reason in plain words. (That rivals fit as well is what a class is for.)
+func (d *Diagnosis) doubts(a *Accepted) []string {
+	var out []string
+	if told := d.Final.Told(a.place); told < 0.2 {
+		out = append(out, "cannot tell: the readings hardly speak of it, the answer is what was expected before them")
+	}
+	if a.None > 0.2 {
+		out = append(out, fmt.Sprintf("cannot tell: none of the causes looked for may be the one (probability %.0f %%)", 100*a.None))
+	}
+	if p, ok := d.Final.GlobalP(); ok && p < 0.01 {
+		out = append(out, fmt.Sprintf("cannot tell: with all causes named the readings still contradict the works (p = %s)", unit.Significant(p, 1)))
+	}
+	if a.leaning >= 0 && a.Least < d.Limit*d.Limit/2 {
+		h := d.Model.Obs[a.leaning].Head
+		out = append(out, fmt.Sprintf("cannot tell: it leans on one reading; without that at %s in round %s the drop is %.1f", h.Tap, h.Round, a.Least))
+	}
+	if !a.SpreadHolds {
+		out = append(out, "cannot tell: with faults taken to be ten times as large by nature it would not outweigh chance")
+	}
+	if math.Abs(a.Robust) >= 2 {
+		out = append(out, fmt.Sprintf("cannot tell: a fit that trusts stray readings less moves it by %.1f standard uncertainties", a.Robust))
+	}
+	return out
 }
 
 // grade: proven asks for all of: beyond the family-wise limit (it was accepted),
@@ -67,15 +95,11 @@ func (d *Diagnosis) finding(a *Accepted) survey.Finding {
 // leaving any one reading out, nor a robust fit turns round. An open cause is proven as a loss when nothing but its members can
 // explain it.
 func (d *Diagnosis) grade(a *Accepted) survey.Grade {
-	p, ok := d.Final.GlobalP()
-	fits := !ok || p > 0.01
 	whole := a.whole()
-	told := d.Final.Told(a.place)
 	switch {
 	case math.IsNaN(a.Probability):
 		return survey.Hint
-	case whole > 0.9 && a.None < 0.2 && fits && d.Final.Converged && told >= 0.2 && a.SpreadHolds && a.Least > d.Limit*d.Limit/2 &&
-		math.Abs(a.Robust) < 2 && (len(a.Class) > 0 || d.mixUp(a) < 0.1):
+	case whole > 0.9 && d.Final.Converged && len(d.doubts(a)) == 0 && (len(a.Class) > 0 || d.mixUp(a) < 0.1):
 		return survey.Proven
 	case whole > 0.5:
 		return survey.Likely
@@ -309,15 +333,8 @@ func (d *Diagnosis) evidence(a *Accepted, f *survey.Finding) {
 	f.Evidence = append(f.Evidence, fmt.Sprintf(
 		"allowing this cause lowers the sum of squares by %.1f; chance alone reaches %.1f in one sound survey of %s (%d causes tested)",
 		a.T, d.Limit*d.Limit, oneIn(d.set.FalseAlarm), d.Tests))
-	if a.leaning >= 0 && a.Least < d.Limit*d.Limit {
-		h := d.Model.Obs[a.leaning].Head
-		f.Evidence = append(f.Evidence, fmt.Sprintf("it leans on one reading: without that at %s in round %s the drop is %.1f", h.Tap, h.Round, a.Least))
-	}
 	if math.Abs(a.Robust) > 1 {
 		f.Evidence = append(f.Evidence, fmt.Sprintf("a robust fit, which trusts stray readings less, moves it by %.1f standard uncertainties", a.Robust))
-	}
-	if !a.SpreadHolds {
-		f.Evidence = append(f.Evidence, "with faults taken to be ten times as large by nature it would not outweigh chance")
 	}
 	for i, r := range append(append([]Rival(nil), a.Class...), a.Others...) {
 		if i >= 4 || r.LnOdds > hopeless {

@@ -49,6 +49,8 @@ type place struct {
 	noise   float64
 	link    int
 	flow    bool // m3/s instead of m
+	// tap and gauge, where a recorded level and a gauge of the survey come into it.
+	tap, gauge string
 }
 
 // NextReadings ranks, for every accepted cause that has rivals, the readings that would
@@ -171,8 +173,16 @@ func (d *Diagnosis) places(a *Accepted) []place {
 	var out []place
 	main := m.LinkIndex(d.pipeOf(a.Cause))
 	for _, t := range s.Taps {
-		out = append(out, place{words: "tap " + t.Name, probes: []hydraulic.Probe{m.ProbeOf(t.Name, hydraulic.Piezometric)}, weights: one,
-			noise: math.Sqrt(newOwnSD*newOwnSD + newGaugeSD*newGaugeSD + math.Pow(d.Final.LevelSD(t.Name), 2)), link: main})
+		here := place{words: "tap " + t.Name + " with another gauge", probes: []hydraulic.Probe{m.ProbeOf(t.Name, hydraulic.Piezometric)}, weights: one,
+			noise: math.Hypot(newOwnSD, newGaugeSD), link: main, tap: t.Name}
+		out = append(out, here)
+		// The suspected gauge carried to a tap where it has not been.
+		for _, g := range suspectedGauges(a) {
+			if !d.hasRead(g, t.Name) {
+				here.words, here.noise, here.gauge = "tap "+t.Name+" with gauge "+g, newOwnSD, g
+				out = append(out, here)
+			}
+		}
 	}
 	fresh := math.Sqrt(newOwnSD*newOwnSD + newGaugeSD*newGaugeSD + newLevelSD*newLevelSD)
 	for i, p := range s.Points {
@@ -207,6 +217,27 @@ func (d *Diagnosis) places(a *Accepted) []place {
 	return out
 }
 
+// suspectedGauges are the pressure gauges among a cause and its rivals.
+func suspectedGauges(a *Accepted) []string {
+	var out []string
+	for _, c := range append([]Rival{{Cause: a.Cause}}, a.Class...) {
+		if c.Kind == survey.GaugeOff && c.Unknown.Quantity == "offset" {
+			out = append(out, c.Item)
+		}
+	}
+	return out
+}
+
+// hasRead reports whether a gauge was read at a tap.
+func (d *Diagnosis) hasRead(gauge, tap string) bool {
+	for _, o := range d.Model.Obs {
+		if o.Head.Gauge == gauge && o.Head.Tap == tap {
+			return true
+		}
+	}
+	return false
+}
+
 // near: a pipe that meets the suspected place.
 func (d *Diagnosis) near(a *Accepted, p survey.Pipe) bool {
 	name := d.pipeOf(a.Cause)
@@ -226,7 +257,12 @@ func judge(worlds []*calibrate.WhatIf, p []float64, names []string, at place) (N
 		if math.IsNaN(e.SD) {
 			return Next{}, false
 		}
-		of[k] = stat.Outlook{Probability: p[k], Mean: e.Value, Variance: e.SD*e.SD + at.noise*at.noise}
+		variance := e.SD*e.SD + at.noise*at.noise
+		for _, more := range []calibrate.Estimate{w.LevelError(at.tap), w.Offset(at.gauge)} {
+			e.Value += more.Value
+			variance += more.SD * more.SD
+		}
+		of[k] = stat.Outlook{Probability: p[k], Mean: e.Value, Variance: variance}
 	}
 	n := Next{Where: at.words, Gain: stat.EntropyDrop(of), Likeliest: names[0], OfFlow: at.flow}
 	// The likeliest is the first: classes are sorted by their odds.

@@ -417,3 +417,30 @@ func TestWornPump(t *testing.T) {
 		t.Errorf("got %q", got)
 	}
 }
+
+// TestNextReading: what would part a class is what parts the twins: another gauge at the
+// tap, or a tap either side of the valve.
+func TestNextReading(t *testing.T) {
+	tw := &twin{s: main3(), offset: map[string]float64{"GB": 8000}}
+	for _, p := range []string{"A", "B", "C"} {
+		tw.tap(p, "", 0, p)
+	}
+	next := tw.run(t).NextReadings()
+	if len(next) == 0 || !strings.Contains(next[0].Where, "GB") && next[0].Where != "tap B with another gauge" || next[0].Settles < 0.9 {
+		t.Errorf("gauge or level: %+v", next)
+	}
+	tw = &twin{s: main3()}
+	for _, p := range []string{"A", "B", "C"} {
+		tw.tap(p, "", 0, p)
+	}
+	tw.spoil = func(s *survey.Survey) { s.Fittings[0].K.V = 25 }
+	next = tw.run(t).NextReadings()
+	if len(next) == 0 || next[0].Where != "either side of V, with one gauge" || next[0].Settles < 0.9 || next[0].Scale < 1 {
+		t.Errorf("valve or wall: %+v", next)
+	}
+	// 25 velocity heads of the stated flow in a bore of 200 mm: the size the crew is told.
+	v := next[0].Flow / (math.Pi / 4 * 0.2 * 0.2)
+	if d := math.Abs(next[0].Difference) / (25 * v * v / 2 / 9.81); d < 0.8 || d > 1.2 {
+		t.Errorf("the difference at the valve is %.2f of what K = 25 makes", d)
+	}
+}

@@ -31,6 +31,10 @@ func (d *Diagnosis) words(a *Accepted, f *survey.Finding) {
 	case f.Kind == survey.CauseOpen:
 		f.Statement = fmt.Sprintf("Between %s more head is lost than sound works would lose%s, but these readings cannot say by which of: %s.",
 			strings.ReplaceAll(f.Item, "..", " and "), cost, d.members(a))
+		if len(a.Class) == 0 {
+			f.Statement = fmt.Sprintf("Between %s more head is lost than sound works would lose%s; %s would explain it, but these readings do not prove it.",
+				strings.ReplaceAll(f.Item, "..", " and "), cost, plain(a.Cause))
+		}
 		f.Advice = d.openAdvice(a)
 		f.Settle = d.settle(a)
 		f.Cautions = []string{cautionPressure, cautionSurge, cautionLocal}
