@@ -61,6 +61,10 @@ var worksCases = []validateGroup{
 		{"unusual coefficient", []change{{"pipes.csv", "1990,0.02,", "1990,0.02,14"}}, []string{
 			`notice: pipes.csv:3, c_value "14": is an unusual coefficient; look at the number; sound pipes have about 90 to 150`,
 		}},
+		{"very smooth coefficient", []change{{"pipes.csv", "1990,0.02,", "1990,0.02,190"}}, []string{
+			`notice: pipes.csv:3, c_value "190": is an unusual coefficient; look at the number; sound pipes have about 90 to 150`,
+		}},
+		{"sound coefficient", []change{{"pipes.csv", "1990,0.02,", "1990,0.02,145"}}, nil},
 		{"year of two figures", []change{{"pipes.csv", "PVC,1990", "PVC,90"}}, []string{
 			`notice: pipes.csv:3, laid "90": is an unusual year; write the year with four figures`,
 		}},
