@@ -1,7 +1,6 @@
 package csvfile
 
 import (
-
 	"math"
 	"reflect"
 	"slices"
