@@ -444,3 +444,26 @@ func TestNextReading(t *testing.T) {
 		t.Errorf("the difference at the valve is %.2f of what K = 25 makes", d)
 	}
 }
+
+// TestHazenWilliams: the same diagnosis under the other friction law: a low C is found, in C.
+func TestHazenWilliams(t *testing.T) {
+	tw := &twin{s: main3()}
+	tw.s.Info.FrictionLaw = survey.HazenWilliams
+	tw.s.Fittings = nil
+	for i := range tw.s.Pipes {
+		tw.s.Pipes[i].C = survey.Some(130)
+	}
+	for _, p := range []string{"A", "B", "C"} {
+		tw.tap(p, "", 0, p)
+	}
+	tw.spoil = func(s *survey.Survey) { s.Pipes[1].C.V = 75 }
+	d := tw.run(t)
+	if got := verdict(d); got != "fouled-pipe:P2" {
+		t.Fatalf("got %q", got)
+	}
+	for _, f := range d.Findings() {
+		if f.Item == "P2" && f.Kind == survey.FouledPipe && (f.Unit != "C" || math.Abs(f.Estimate.V-75) > 6 || !(f.Low.V < 75 && 75 < f.High.V)) {
+			t.Errorf("C %.1f (%.1f to %.1f) %s, truth 75", f.Estimate.V, f.Low.V, f.High.V, f.Unit)
+		}
+	}
+}
