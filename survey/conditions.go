@@ -18,7 +18,7 @@ const defaultDrawOffSD = 0.05
 
 // InForce gives the conditions of a round. A row for the round overrides the rows for
 // all rounds of the same item and kind; two draw-offs at one point in one round add;
-// open undoes shut, a speed undoes stopped and stopped a speed. Where no standard
+// open undoes shut and stopped, a speed undoes stopped and stopped a speed. Where no standard
 // uncertainty is stated that of a stated draw-off is 5 % of its value and that of
 // everything else stated is 0; a row without a value keeps an unstated one, for what
 // is to be estimated has no uncertainty yet.
@@ -56,6 +56,7 @@ func (s *Survey) InForce(round string) RoundConditions {
 				f.Shut[c.Item] = true
 			case OpenAgain:
 				delete(f.Shut, c.Item)
+				delete(f.Stopped, c.Item)
 			}
 		}
 	}

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"io/fs"
 	"os"
+	"slices"
 
 	"tapround/calibrate"
 	"tapround/calibrate/fault"
@@ -32,6 +33,7 @@ func readSurvey(folder fs.FS) data {
 	s, problems := csvfile.ReadFolder(folder)
 	problems = append(problems, catalogue.Complete(s)...)
 	problems = append(problems, s.Validate()...)
+	slices.SortStableFunc(problems, func(a, b survey.Problem) int { return int(b.Severity) - int(a.Severity) })
 	d := data{survey: s, problems: problems}
 	if problems.Fatal() {
 		return d
