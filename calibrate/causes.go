@@ -4,6 +4,7 @@ import (
 	"math"
 
 	"tapround/survey"
+	"tapround/survey/unit"
 )
 
 // Spreads are how large a fault of each kind may be: the standard deviation, in
@@ -184,4 +185,20 @@ func (m *Model) Places() []Place {
 		}
 	}
 	return out
+}
+
+// GaugeUnit is the unit that a gauge shows, for turning its offset back.
+func GaugeUnit(g survey.Gauge) unit.Unit {
+	dim := unit.Pressure
+	switch g.Kind {
+	case survey.FlowMeter:
+		dim = unit.Flow
+	case survey.LevelGauge:
+		dim = unit.Length
+	}
+	u, err := unit.Parse(g.Unit, dim)
+	if err != nil {
+		return unit.Unit{Name: g.Unit, Factor: 1} // the reader has refused such a gauge already
+	}
+	return u
 }

@@ -197,7 +197,7 @@ func parameterRows(f *calibrate.Fit) []ParameterRow {
 			scale, row.Unit = 100, "%"
 		case x.Quantity == "offset":
 			g := m.GaugeNamed(x.Item)
-			u := gaugeUnit(g)
+			u := calibrate.GaugeUnit(g)
 			scale, row.Unit = u.FromSIDifference(1), g.Unit
 		}
 		row.Fitted, row.Low, row.High = known(scale*v), known(scale*lo), known(scale*hi)
@@ -215,21 +215,6 @@ func parameterRows(f *calibrate.Fit) []ParameterRow {
 		out = append(out, row)
 	}
 	return out
-}
-
-func gaugeUnit(g survey.Gauge) unit.Unit {
-	dim := unit.Pressure
-	switch g.Kind {
-	case survey.FlowMeter:
-		dim = unit.Flow
-	case survey.LevelGauge:
-		dim = unit.Length
-	}
-	u, err := unit.Parse(g.Unit, dim)
-	if err != nil {
-		return unit.Unit{Name: g.Unit, Factor: 1} // refused by the reader before it comes here
-	}
-	return u
 }
 
 func known(v float64) survey.Maybe {

@@ -5,6 +5,7 @@ import (
 	"math"
 	"strings"
 
+	"tapround/calibrate"
 	"tapround/survey"
 	"tapround/survey/unit"
 )
@@ -169,7 +170,7 @@ func (d *Diagnosis) size(a *Accepted, f *survey.Finding) {
 			return
 		}
 		total, s := fit.ItemTheta(a.place)
-		u := gaugeUnit(g)
+		u := calibrate.GaugeUnit(g)
 		set(u.FromSIDifference(total), u.FromSIDifference(total-1.96*s), u.FromSIDifference(total+1.96*s), g.Unit)
 	case survey.LevelWrong:
 		if a.Unknown.Kind == "level" {
@@ -197,21 +198,6 @@ func (d *Diagnosis) busiest(link int) (round int, flow float64) {
 		}
 	}
 	return round, flow
-}
-
-func gaugeUnit(g survey.Gauge) unit.Unit {
-	dim := unit.Pressure
-	switch g.Kind {
-	case survey.FlowMeter:
-		dim = unit.Flow
-	case survey.LevelGauge:
-		dim = unit.Length
-	}
-	u, err := unit.Parse(g.Unit, dim)
-	if err != nil {
-		return unit.Unit{Name: g.Unit, Factor: 1} // the reader has refused such a gauge already
-	}
-	return u
 }
 
 func (d *Diagnosis) evidence(a *Accepted, f *survey.Finding) {

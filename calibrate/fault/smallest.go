@@ -5,6 +5,7 @@ import (
 	"math"
 	"sort"
 
+	"tapround/calibrate"
 	"tapround/survey"
 	"tapround/survey/unit"
 )
@@ -77,7 +78,7 @@ func (d *Diagnosis) plainSmallest(x *Smallest, c Cause, size float64) {
 	switch c.Kind {
 	case survey.GaugeOff:
 		g := d.Model.GaugeNamed(c.Item)
-		x.Value, x.Unit = gaugeUnit(g).FromSIDifference(size), g.Unit
+		x.Value, x.Unit = calibrate.GaugeUnit(g).FromSIDifference(size), g.Unit
 	case survey.UnrecordedFlow:
 		x.Value, x.Unit = 1e3*size, "L/s"
 	case survey.MachineOffCurve:
