@@ -24,6 +24,9 @@ import (
 // becomes odd too.
 func (v *Solver) factorise() error {
 	err := v.factoriseAbove(leastSlope)
+	if err == nil {
+		return nil
+	}
 	var bad *sparse.NotPositive
 	if !errors.As(err, &bad) {
 		return err

@@ -185,17 +185,30 @@ func (v *Solver) largestFlow() float64 {
 	return most
 }
 
+// runaway names a machine that has left its curve at the far end, where the curve bends
+// the wrong way: continued, it gains ever more, or takes ever less, than the pipes ask
+// for, and a duty far out means nothing.
+func (v *Solver) runaway() error {
+	s := v.sys
+	for i, bends := range s.bends {
+		if bends && v.in[i] && v.slope[i] < 0 && v.flow[i] > s.size[i]*v.ratio[i] && v.beyond(i) {
+			return &Unsolvable{Cause: fmt.Sprintf("%s finds no duty on its works curve: continued beyond its last point, the curve leaves what the pipes ask for further and further behind", s.title(i)), Links: []string{s.links[i].Name}}
+		}
+	}
+	return nil
+}
+
 // stuck names the link that stays furthest from its energy balance, a machine where
 // one has run away.
 func (v *Solver) stuck() error {
 	s := v.sys
+	if err := v.runaway(); err != nil {
+		return err
+	}
 	at, worst := -1, 0.0
 	for i := range s.links {
 		if !v.in[i] {
 			continue
-		}
-		if s.bends[i] && math.Abs(v.flow[i]) > 10*s.size[i]*v.ratio[i] {
-			return &Unsolvable{Cause: fmt.Sprintf("%s finds no duty: continued beyond its last point, its works curve never meets what the pipes ask for", s.title(i)), Links: []string{s.links[i].Name}}
 		}
 		if e := math.Abs(v.s[i]); at < 0 || e > worst || math.IsNaN(e) {
 			at, worst = i, e

@@ -151,11 +151,7 @@ func (v *Solver) duty() bool {
 		v.blocked[i] = v.blocked[i] && !bends
 	}
 	if v.feed() == nil {
-		for i, bends := range v.sys.bends {
-			if bends && v.in[i] {
-				v.flow[i] = v.guess(i)
-			}
-		}
+		v.start()
 		if v.plain() && v.sound() {
 			return true
 		}

@@ -85,6 +85,9 @@ func (v *Solver) Solve(p *Parameters, c *Conditions, warm *State) (*State, error
 	if v.mayRunElsewhere(err) && v.duty() {
 		err = nil
 	}
+	if err == nil {
+		err = v.runaway()
+	}
 	if err != nil {
 		return nil, err
 	}
