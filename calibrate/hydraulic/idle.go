@@ -14,17 +14,20 @@ import "math"
 //     trapped anything between: its head is not known. A running pump or turbine
 //     traps nothing.
 type idle struct {
-	v    *Solver
-	part []int // per point
-	// Per part. An open part starts with no head; a trapped one keeps none.
-	head      []float64
-	held      []bool
-	trapped   []bool
-	spins     []bool    // a machine in it drives water round, at heads not yet solved
-	low, high []float64 // bounds by links; infinite: none
-	byLow     []int     // link that sets low, -1 none
-	byHigh    []int
-	links     []int // one-way links with no flow at the edge of an open part
+	v     *Solver
+	part  []int     // per point
+	rel   []float64 // per point: its head above that of its part
+	links []int     // one-way links with no flow at the edge of an open part
+
+	// Per part. The head of a held part is 0, its points having theirs; an open part
+	// starts with none, NaN, and a trapped one keeps none.
+	head          []float64
+	held, trapped []bool
+	// A machine drives water round in it: spins where that is still to be solved, turns
+	// where it is solved but for the level.
+	spins, turns  []bool
+	low, high     []float64 // bounds by links; infinite: none
+	byLow, byHigh []int     // links that set them, -1 none
 }
 
 // settleIdle gives open parts their heads and closes the links that do not give them.
@@ -65,20 +68,20 @@ func (v *Solver) settleIdle() (opened int, err error) {
 		return -1, err
 	}
 	for p, k := range d.part {
-		if d.held[k] && v.mark[p] && !v.live[p] {
-			// It spins on nothing but the links at its edge; they stay as they are.
+		if (d.held[k] || d.turns[k]) && v.mark[p] && !v.live[p] {
+			// It hangs on nothing but the links at its edge; they stay as they are.
 			copy(v.blocked, before)
 			return -1, v.feed()
 		}
 	}
 	for i := range v.sys.links {
-		if a, b := d.ends(i); !d.held[a] || !d.held[b] {
+		if a, b := d.ends(i); a != b || (!d.held[a] && !d.turns[a]) {
 			v.flow[i] = 0
 		}
 	}
 	for p, k := range d.part {
-		if v.sys.points[p].Kind == Junction && (d.byLow[k] >= 0 || d.byHigh[k] >= 0) {
-			v.head[p] = d.head[k]
+		if !d.held[k] && !d.open(k) {
+			v.head[p] = d.head[k] + d.rel[p]
 		}
 	}
 	return -1, v.newton()
@@ -87,7 +90,7 @@ func (v *Solver) settleIdle() (opened int, err error) {
 // findIdle parts the system along one-way links that pass nothing.
 func (v *Solver) findIdle() *idle {
 	s := v.sys
-	d := &idle{v: v, part: make([]int, len(s.points))}
+	d := &idle{v: v, part: make([]int, len(s.points)), rel: make([]float64, len(s.points))}
 	least := v.leastBackflow()
 	flows := func(i int) bool { return v.in[i] && math.Abs(v.flow[i]) > least }
 	clear(v.mark)
@@ -102,25 +105,23 @@ func (v *Solver) findIdle() *idle {
 		for _, o := range v.queue {
 			d.part[o] = len(d.head)
 			if s.points[o].Kind != Junction || v.draw[o] != 0 {
-				head = 0 // held; its points have heads of their own
+				head = 0
 			}
 		}
-		d.head, d.trapped, d.spins = append(d.head, head), append(d.trapped, false), append(d.spins, false)
+		d.head, d.held = append(d.head, head), append(d.held, head == 0)
+		d.trapped, d.spins, d.turns = append(d.trapped, false), append(d.spins, false), append(d.turns, false)
 		d.low, d.high = append(d.low, math.Inf(-1)), append(d.high, math.Inf(1))
 		d.byLow, d.byHigh = append(d.byLow, -1), append(d.byHigh, -1)
 	}
 	for i := range s.links {
-		// Water that a pump drives round has no one head.
 		if a, b := d.ends(i); a == b && !v.shut[i] && s.links[i].Machine != nil && !v.blocked[i] && d.open(a) {
-			if v.live[s.links[i].From] {
-				d.head[a] = 0
-			} else {
-				d.spins[a] = true
-			}
+			d.turns[a], d.spins[a] = v.live[s.links[i].From], !v.live[s.links[i].From]
 		}
 	}
-	for k := range d.head {
-		d.held = append(d.held, !d.open(k))
+	for p, k := range d.part {
+		if d.held[k] || d.turns[k] {
+			d.rel[p] = v.head[p]
+		}
 	}
 	for i, w := range s.ways {
 		a, b := d.ends(i)
@@ -164,11 +165,11 @@ func (d *idle) raise() bool {
 		for _, i := range d.links {
 			p, q := d.points(i)
 			a, b := d.part[p], d.part[q]
-			from := d.low[a]
-			if !d.open(a) {
-				from = d.v.head[p]
+			from := d.head[a]
+			if d.open(a) {
+				from = d.low[a]
 			}
-			if h := from + d.rise(i); d.open(b) && h > d.low[b] && d.v.sys.points[p].Kind != Outlet {
+			if h := from + d.rel[p] + d.rise(i) - d.rel[q]; d.open(b) && h > d.low[b] && d.v.sys.points[p].Kind != Outlet {
 				d.low[b], d.byLow[b], again = h, i, true
 			}
 		}
@@ -186,14 +187,11 @@ func (d *idle) lower(sink func(k int) bool) {
 		for _, i := range d.links {
 			p, q := d.points(i)
 			a, b := d.part[p], d.part[q]
-			to := d.high[b]
-			switch {
-			case d.byLow[b] >= 0 && !d.open(b):
-				to = d.head[b]
-			case !d.open(b):
-				to = d.v.head[q]
+			to := d.head[b]
+			if d.open(b) {
+				to = d.high[b]
 			}
-			if h := to - d.rise(i); sink(a) && h < d.high[a] {
+			if h := to + d.rel[q] - d.rise(i) - d.rel[p]; sink(a) && h < d.high[a] {
 				d.high[a], d.byHigh[a], again = h, i, true
 			}
 		}
@@ -262,7 +260,7 @@ func (d *idle) fill() {
 // a higher head. A level that stands below an outlet is not kept.
 func (d *idle) traps(k int) bool {
 	s := d.v.sys
-	return s.links[d.byLow[k]].Machine == nil && d.byHigh[k] >= 0 && !d.intoOutlet(d.byHigh[k]) && d.low[k] < d.high[k]-pressed
+	return s.links[d.byLow[k]].Machine == nil && !d.turns[k] && d.byHigh[k] >= 0 && !d.intoOutlet(d.byHigh[k]) && d.low[k] < d.high[k]-pressed
 }
 
 // intoOutlet reports that the chain of links which sets a most head ends at an outlet.

@@ -67,7 +67,7 @@ func TestDatum(t *testing.T) {
 // same heads and the opposite flow.
 func TestDirection(t *testing.T) {
 	for seed := uint64(0); seed < 60; seed++ {
-		w, st := solved(rand.New(rand.NewPCG(seed, 22)), traits{points: 12, extra: 8, stillShare: 0.1})
+		w, _ := solved(rand.New(rand.NewPCG(seed, 22)), traits{points: 12, extra: 8, stillShare: 0.1})
 		p := w.sys.NewParameters()
 		copy(p.LnRough, w.p.LnRough)
 		for i := range w.links {
@@ -81,7 +81,7 @@ func TestDirection(t *testing.T) {
 				l.Pipe.Fittings[k].ReverseK = math.NaN()
 			}
 		}
-		st = w.again(t)
+		st := w.again(t)
 		for i := range w.links {
 			l := &w.links[i]
 			l.From, l.To = l.To, l.From

@@ -2,11 +2,6 @@ package hydraulic
 
 import "tapround/calibrate/friction"
 
-// leastSlope, m/(m3/s), is a resistance in series with every link. It keeps the
-// matrix definite where a law is flat at rest; at 1 m3/s it is worth 1e-8 m, a tenth
-// of what a solution may leave open.
-const leastSlope = 1e-8
-
 // perSquare is the loss of a fitting at 1 m3/s.
 func perSquare(k, bore, gravity float64) float64 {
 	h, _ := friction.Minor(1, k, bore, gravity)
@@ -24,8 +19,7 @@ func (v *Solver) law(i int, q float64) (h, dq float64) {
 		stiff := v.stiffness / v.sys.size[i]
 		return h + stiff*q, stiff
 	}
-	h, dq = v.bare(i, q)
-	return h + leastSlope*q, dq + leastSlope
+	return v.bare(i, q)
 }
 
 // barrierHeads are the stiffnesses to try in turn: the first lets any head of real works
@@ -33,7 +27,7 @@ func (v *Solver) law(i int, q float64) (h, dq float64) {
 // all measure.
 var barrierHeads = [...]float64{1e4, 1e8, 1e12}
 
-// bare is law without leastSlope and barrier.
+// bare is law without the barrier.
 func (v *Solver) bare(i int, q float64) (h, dq float64) {
 	l := &v.sys.links[i]
 	if l.Machine != nil {

@@ -18,10 +18,14 @@ import (
 //
 // so that x = D^-1 (A' y + s) and (A D^-1 A') y = b - A D^-1 s [TP].
 
-// factorise prepares solve at the present slopes. Odd links, those whose slope is not
-// positive, get a positive stand-in in the matrix and are put right in solve. Where a
-// link loses so little beside its neighbours that the matrix cannot hold both, it
-// becomes odd too.
+// leastSlope, m/(m3/s), is the least that stands in the matrix. At 1 m3/s it is worth
+// 1e-8 m: a link that loses less is as good as none.
+const leastSlope = 1e-8
+
+// factorise prepares solve at the present slopes. Odd links, those whose slope is less
+// than leastSlope or negative, get a positive stand-in in the matrix and are put right in
+// solve. Where a link loses so little beside its neighbours that the matrix cannot hold
+// both, it becomes odd too.
 func (v *Solver) factorise() error {
 	err := v.factoriseAbove(leastSlope)
 	if err == nil {

@@ -161,6 +161,7 @@ func (v *Solver) duty() bool {
 	copy(v.blocked, blocked)
 	v.headError, v.flowError = e, b
 	_ = v.feed() // it fed this pattern before
+	v.evaluate(v.flow, v.loss, v.slope)
 	return false
 }
 

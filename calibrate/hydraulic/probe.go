@@ -72,10 +72,6 @@ func (v *Solver) reading(p Probe) reading {
 		r = v.lessVelocity(v.total(p), p)
 		r.add(v.velocity(p, true), 1)
 	}
-	if r.link >= 0 && !v.in[r.link] {
-		// Nothing flows, whatever the parameters.
-		r.dq, r.dParam, r.last = 0, 0, r.first
-	}
 	return r
 }
 

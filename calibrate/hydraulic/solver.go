@@ -36,7 +36,7 @@ type Solver struct {
 	conduct, s, x                                 []float64 // per link
 	b, y, dy, rhs                                 []float64 // per row
 	entries                                       []float64
-	odd                                           []int // links with a slope that is not positive
+	odd                                           []int // links whose slope does not stand in the matrix as it is
 	spare                                         [][]float64
 	queue                                         []int
 	mark                                          []bool // per point
@@ -200,7 +200,7 @@ func (v *Solver) finish() *State {
 		Iterations: v.steps, HeadError: v.headError, FlowError: v.flowError}
 	for i := range s.links {
 		if v.in[i] {
-			st.Flow[i] = v.flow[i] + 0 // no negative zero
+			st.Flow[i] = v.flow[i]
 		}
 		st.Closed[i] = v.shut[i] || v.blocked[i]
 	}
