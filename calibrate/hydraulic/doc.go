@@ -35,10 +35,17 @@
 // sensitivities as it is, by a correction of small rank [W], and the descent finds
 // the duty that holds by itself.
 //
+// # Parts at rest
+//
+// A part in which nothing can move is put at rest exactly: one head, no flow. A part
+// that no open link joins to a reservoir or an outlet has no head. Between one-way links
+// that pass nothing the balances leave a head open; see idle for how it is settled.
+//
 // # Sensitivities
 //
-// The matrix of the last step is symmetric, so one solve with it for each reading
-// gives the derivatives by all parameters at once (adjoint) [G].
+// The system of a step is symmetric, so one solve with it for each reading gives the
+// derivatives by all parameters at once (adjoint) [G]. They are exact for the links that
+// flow; a link at the very point of closing has another derivative on its other side.
 //
 // # References
 //
@@ -49,5 +56,6 @@
 //	     (1978) 747-760: the content and its uniqueness
 //	[W]  M. A. Woodbury, Inverting modified matrices, Princeton Statistical Research
 //	     Group Memo 42 (1950)
-//	[G]  G. Strang, Computational Science and Engineering (2007), sect. 8.7: adjoint method
+//	[G]  G. Strang, Computational Science and Engineering, Wellesley-Cambridge (2007),
+//	     sect. 8.7: adjoint methods
 package hydraulic
