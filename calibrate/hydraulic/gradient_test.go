@@ -204,6 +204,7 @@ func (w *works) difference(v *Solver, k knob, step float64, probes []Probe, base
 // TestGradients compares every derivative of every view on seeded random works of all
 // kinds.
 func TestGradients(t *testing.T) {
+	seen := map[string]int{}
 	for name, tr := range kinds {
 		if name == "large" || name == "wild" {
 			tr.points, tr.extra = 8, 3
@@ -213,11 +214,20 @@ func TestGradients(t *testing.T) {
 			r := rand.New(rand.NewPCG(seed, 11))
 			w := randomWorks(r, tr)
 			m, s, b := w.compare(t, fmt.Sprintf("%s %d", name, seed), w.probes(r))
+			if m > 0 {
+				w.note(seen)
+			}
 			made, sharp, blurred = made+m, sharp+s, blurred+b
 		}
 		t.Logf("%s: %d derivatives compared, %.0f %% of them sharp, %d blurred", name, made, 100*float64(sharp)/float64(made), blurred)
 		if made < 10000 || sharp < made/2 || blurred > made/10000 {
 			t.Errorf("%s: %d derivatives compared, %d sharp, %d blurred: too few that tell", name, made, sharp, blurred)
+		}
+	}
+	for _, what := range []string{"laminar", "transitional", "turbulent", "Hazen-Williams", "all at rest", "reversed", "reversed through its own coefficient", "pump", "turbine",
+		"outlet", "outlet at the From end", "jet", "check valve open", "check valve closed", "shut pipe", "shut fitting", "stopped machine", "loops", "tree", "not fed"} {
+		if seen[what] < 2 {
+			t.Errorf("%s: in %d works only", what, seen[what])
 		}
 	}
 }

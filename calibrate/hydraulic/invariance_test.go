@@ -3,6 +3,7 @@ package hydraulic
 import (
 	"math"
 	"math/rand/v2"
+	"slices"
 	"testing"
 )
 
@@ -205,6 +206,28 @@ func TestSplit(t *testing.T) {
 			if h := got.Head[len(w.points)+i]; math.Abs(h-middle) > 1e-8*(1+math.Abs(h)) {
 				t.Errorf("split: pipe %s has %.12g at its middle, reads %.12g", l.Name, h, middle)
 			}
+		}
+	}
+}
+
+// TestShared: one system serves several goroutines at once, each with its solver.
+func TestShared(t *testing.T) {
+	w := grid(200)
+	want, err := w.sys.NewSolver().Solve(&w.p, &w.c, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	states := make(chan *State)
+	for range 4 {
+		go func() {
+			st, _ := w.sys.NewSolver().Solve(&w.p, &w.c, nil)
+			states <- st
+		}()
+	}
+	for range 4 {
+		st := <-states
+		if st == nil || !slices.Equal(st.Head, want.Head) || !slices.Equal(st.Flow, want.Flow) {
+			t.Error("another goroutine found another state")
 		}
 	}
 }
