@@ -169,7 +169,7 @@ func (d *idle) raise() bool {
 			if d.open(a) {
 				from = d.low[a]
 			}
-			if h := from + d.rel[p] + d.rise(i) - d.rel[q]; d.open(b) && h > d.low[b] && d.v.sys.points[p].Kind != Outlet {
+			if h := from + d.rel[p] + d.rise(i) - d.rel[q]; d.open(b) && h > d.low[b] {
 				d.low[b], d.byLow[b], again = h, i, true
 			}
 		}

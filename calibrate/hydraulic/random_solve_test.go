@@ -60,7 +60,7 @@ func TestRandomWorks(t *testing.T) {
 // fromAnywhere solves again from a random earlier state: flows from a billionth of a
 // link's size to a thousand times it, in either direction, links closed at random. The
 // answer is the same, unless works curves that bend allow several.
-func (w *works) fromAnywhere(t *testing.T, seed uint64, want *State, unique bool) {
+func (w *works) fromAnywhere(t *testing.T, seed uint64, want *State, unique bool) *State {
 	t.Helper()
 	r := rand.New(rand.NewPCG(seed, 13))
 	start := &State{Head: make([]float64, len(w.points)), Flow: make([]float64, len(w.links)), Closed: make([]bool, len(w.links))}
@@ -74,7 +74,7 @@ func (w *works) fromAnywhere(t *testing.T, seed uint64, want *State, unique bool
 	st, err := w.sys.NewSolver().Solve(&w.p, &w.c, start)
 	if err != nil {
 		t.Errorf("seed %d: from another start: %v", seed, err)
-		return
+		return nil
 	}
 	w.verify(t, seed, st)
 	for i := range st.Head {
@@ -83,6 +83,7 @@ func (w *works) fromAnywhere(t *testing.T, seed uint64, want *State, unique bool
 			t.Errorf("seed %d: point %s has %g m, from another start %g m", seed, w.points[i].Name, want.Head[i], st.Head[i])
 		}
 	}
+	return st
 }
 
 // lossOf is H_from - H_to of link i at flow q, straight from the laws.
@@ -220,6 +221,20 @@ func (w *works) verify(t *testing.T, seed uint64, st *State) {
 		}
 	}
 	w.verifyFeed(t, seed, st)
+	if left := w.left(st); left > st.HeadError+1e-11+8e-16*highest {
+		t.Errorf("seed %d: leaves %g m open and says %g", seed, left, st.HeadError)
+	}
+}
+
+// left is the worst energy that a state leaves open, m.
+func (w *works) left(st *State) float64 {
+	worst := 0.0
+	for i, l := range w.links {
+		if e := w.endHead(i, l.From, st) - w.endHead(i, l.To, st) - w.lossOf(i, st.Flow[i]); !st.Closed[i] && !math.IsNaN(e) {
+			worst = math.Max(worst, math.Abs(e))
+		}
+	}
+	return worst
 }
 
 // verifyFeed: a head is missing exactly where open links lead to no reservoir and no

@@ -142,6 +142,10 @@ func TestProfile(t *testing.T) {
 	near(t, "nozzle", n[1].Total-n[2].Total, 0.1*head(0.06), tight)
 	near(t, "jet", n[2].Total-n[2].Piezometric, head(0.06), tight)
 	near(t, "in the open", n[2].Piezometric, 5, 0)
+	b.points[b.index["O"]].Elevation = 35
+	b.solve()
+	n = b.v.Profile(b.link("Q"))
+	near(t, "no jet from an outlet above the level", n[2].Piezometric, 30, 0)
 }
 
 // TestReverseK: an enlargement that the water meets the other way round has its own
