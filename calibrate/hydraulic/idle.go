@@ -229,22 +229,11 @@ func (d *idle) start(i int) {
 	v.flow[i] = v.guess(i) / 10
 }
 
-// fill decides the parts that something could fill: filled, or trapped.
+// fill decides the parts that something could fill: filled, or trapped. What a trapped
+// part fills is cut off with it.
 func (d *idle) fill() {
 	for k := range d.head {
 		d.trapped[k] = d.spins[k] || (d.open(k) && d.byLow[k] >= 0 && d.traps(k))
-	}
-	// What a trapped part fills is not known either.
-	for again := true; again; {
-		again = false
-		for k := range d.head {
-			if !d.open(k) || d.byLow[k] < 0 || d.trapped[k] {
-				continue
-			}
-			if a, _ := d.ends(d.byLow[k]); d.trapped[a] {
-				d.trapped[k], again = true, true
-			}
-		}
 	}
 	for k := range d.head {
 		switch {
